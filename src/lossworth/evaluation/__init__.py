@@ -1,0 +1,1 @@
+"""From checked records to a ranking: rates of a lot, pricing, responsiveness, owning cost, ranking."""

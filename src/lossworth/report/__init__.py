@@ -1,0 +1,1 @@
+"""From a result to the papers: one view, and one module for each paper."""

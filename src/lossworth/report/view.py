@@ -1,0 +1,327 @@
+"""What the papers show: figures chosen, ordered and worded, once for workbook, page and JSON."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from decimal import Decimal
+
+__all__ = [
+    "CostView",
+    "EvaluationView",
+    "ExchangeView",
+    "FindingView",
+    "InputFile",
+    "LotView",
+    "MarginView",
+    "OfferView",
+    "Particular",
+    "RatesView",
+    "RecordView",
+    "ShownFigure",
+    "YearColumn",
+    "YearTableView",
+]
+
+
+@dataclass(frozen=True, slots=True)
+class ShownFigure:
+    """One figure of the trail, ready to be shown, unfolded or written as a formula.
+
+    Parameters
+    ----------
+    id : str
+        Identity; operands refer to it.
+    label : str
+        What it is.
+    value : Decimal
+        Exact value, after rounding where there is one.
+    unit : str
+        Its unit; ``"1"`` for a pure number.
+    operator : str
+        ``"read"``, ``"rule"``, ``"constant"`` for leaves; ``"product"``, ``"quotient"``, ``"sum"``, ``"difference"``,
+        ``"rounded"`` for arithmetic; ``"year table"`` for the sum of a column of a year table.
+    operands : tuple of str
+        Ids of the figures it was computed from, in writing order; for a year table its inputs.
+    rounding_places : int or None
+        Digits behind the decimal mark to which the result was rounded.
+    rounding_mode : str or None
+        ``"half away from zero"`` or ``"down"``.
+    source : str
+        Place, rule or definition in words; for arithmetic an empty text.
+    text : str
+        The value as printed, without unit.
+    arithmetic : str
+        One line that a clerk can follow with a calculator; for leaves the source in words.
+    """
+
+    id: str
+    label: str
+    value: Decimal
+    unit: str
+    operator: str
+    operands: tuple[str, ...]
+    rounding_places: int | None
+    rounding_mode: str | None
+    source: str
+    text: str
+    arithmetic: str
+
+
+@dataclass(frozen=True, slots=True)
+class CostView:
+    """The five amounts of one offer, as ids of figures; None where an amount cannot be computed."""
+
+    evaluated_price: str | None
+    no_load_cost: str | None
+    load_cost: str | None
+    auxiliary_cost: str | None
+    total_owning_cost: str | None
+
+
+@dataclass(frozen=True, slots=True)
+class MarginView:
+    """Distance of a ranked offer to the nearest rival that is not cheaper, for the whole lot.
+
+    Parameters
+    ----------
+    to : str
+        The rival.
+    amount : str
+        Id of the figure of the difference of the total owning costs.
+    percent_of_winner : Decimal
+        The amount in percent of the winner's total owning cost, two places.
+    no_load_loss_kw, load_loss_kw : Decimal or None
+        The amount as kW of one unit's no-load or load loss, six significant digits; None where the rate is zero.
+    """
+
+    to: str
+    amount: str
+    percent_of_winner: Decimal
+    no_load_loss_kw: Decimal | None
+    load_loss_kw: Decimal | None
+
+
+@dataclass(frozen=True, slots=True)
+class Particular:
+    """One value of an offer as read: what the bidder stated and where it stands."""
+
+    name: str
+    text: str
+    unit: str
+    place: str
+    figure: str | None
+
+
+@dataclass(frozen=True, slots=True)
+class OfferView:
+    """One offer as the papers show it.
+
+    Parameters
+    ----------
+    bidder : str
+        Name as read; untrusted text.
+    status : str
+        ``"ranked"``, ``"not evaluated"`` or ``"non-responsive"``.
+    rank : int or None
+        1 for the lowest total owning cost; equal ranks are ties.
+    rank_text : str
+        ``"1"``, ``"1 ="`` for a tie, ``"–"`` where not ranked.
+    particulars : tuple of Particular
+        Price and guaranteed values as read.
+    unit_price, exchange_rate, no_load_loss, load_loss, auxiliary_loss : str or None
+        Ids of the figures that enter the costs; losses in kW.
+    currency : str
+        Currency of the quoted price, empty where unknown.
+    per_unit, lot : CostView
+        Amounts of one unit and of the whole lot.
+    margin : MarginView or None
+        For ranked offers with a rival behind them.
+    above_winner : Decimal or None
+        Total owning cost of the lot less the winner's; zero for the winner; None where not ranked.
+    reasons : tuple of str
+        Why it is not ranked; empty where ranked.
+    """
+
+    bidder: str
+    status: str
+    rank: int | None
+    rank_text: str
+    particulars: tuple[Particular, ...]
+    unit_price: str | None
+    exchange_rate: str | None
+    no_load_loss: str | None
+    load_loss: str | None
+    auxiliary_loss: str | None
+    currency: str
+    per_unit: CostView
+    lot: CostView
+    margin: MarginView | None
+    above_winner: Decimal | None
+    reasons: tuple[str, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class YearColumn:
+    """One column of a year table: a name in code, a heading, a unit, and the values year by year."""
+
+    name: str
+    heading: str
+    unit: str
+    values: tuple[float, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class YearTableView:
+    """The year-by-year table behind derived rates.
+
+    Parameters
+    ----------
+    id : str
+        Identity.
+    columns : tuple of YearColumn
+        ``year``, ``discount_factor``, ``energy_price_per_kwh``, ``demand_charge_per_kw_year``, ``peak_load_pu``,
+        ``no_load``, ``load``, ``auxiliary``; the last three are present values per kW, whose sums are the rates.
+    inputs : mapping of str to str
+        Name of an input of the derivation to the id of its figure: ``discount_rate_percent``,
+        ``evaluation_period_years``, ``years_before_end`` (0, 0.5 or 1), ``energy_price_per_kwh`` (or
+        ``energy_price_year_1`` … for a table by year), ``energy_price_escalation_percent``,
+        ``escalate_before_year_1`` (0 or 1), ``demand_charge_per_kw_year``, ``demand_charge_escalation_percent``,
+        ``load_factor`` and ``loss_factor_coefficient`` (absent where the loss factor is stated), ``loss_factor``,
+        ``peak_load_pu``, ``peak_load_growth_percent``, ``peak_load_cap_pu`` (absent without cap),
+        ``peak_responsibility_factor``, ``hours_energized``, ``hours_of_load``, ``cooling_hours``,
+        ``cooling_share_at_peak``, ``upstream_gross_up``.
+    """
+
+    id: str
+    columns: tuple[YearColumn, ...]
+    inputs: Mapping[str, str]
+
+
+@dataclass(frozen=True, slots=True)
+class RatesView:
+    """The rates that value the losses of a lot.
+
+    Parameters
+    ----------
+    basis : str
+        ``"announced"`` or ``"derived as announced"``.
+    no_load, load, auxiliary : str or None
+        Ids of the rates used, per kW; None for a lot without auxiliary rate.
+    unit : str
+        ``"NCU/kW"``.
+    sources : tuple of str
+        Where the rates come from, in sentences.
+    year_table : YearTableView or None
+        For derived rates.
+    """
+
+    basis: str
+    no_load: str
+    load: str
+    auxiliary: str | None
+    unit: str
+    sources: tuple[str, ...]
+    year_table: YearTableView | None
+
+
+@dataclass(frozen=True, slots=True)
+class LotView:
+    """One lot as the papers show it; offers stand ranked first, then non-responsive, then not evaluated."""
+
+    id: str
+    description: str
+    quantity: int
+    quantity_figure: str
+    rated_power: str
+    limits: tuple[str, ...]
+    rates: RatesView
+    offers: tuple[OfferView, ...]
+    recommendation: str
+
+
+@dataclass(frozen=True, slots=True)
+class ExchangeView:
+    """The exchange rates used: source, kind, date, evidence, and the figure of each currency."""
+
+    source: str
+    kind: str
+    date: str
+    evidence: str
+    rates: tuple[tuple[str, str], ...]
+
+
+@dataclass(frozen=True, slots=True)
+class FindingView:
+    """One finding in the papers."""
+
+    kind: str
+    title: str
+    effect: str
+    place: str
+    bidder: str
+    lot: str
+    statement: str
+    remedy: str
+
+
+@dataclass(frozen=True, slots=True)
+class InputFile:
+    """One input with its fingerprint."""
+
+    path: str
+    sha256: str
+
+
+@dataclass(frozen=True, slots=True)
+class RecordView:
+    """What makes the run repeatable: tool version, time of the run, inputs."""
+
+    tool_version: str
+    generated_at: str
+    inputs: tuple[InputFile, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class EvaluationView:
+    """Everything that the papers of one evaluation show.
+
+    Parameters
+    ----------
+    reference, title, buyer, currency, opening_date, remark : str
+        Identity of the tender; the last two may be empty.
+    recommendation : str
+        The result in one sentence over all lots.
+    rules : tuple of str
+        The rules that were applied, in sentences.
+    method : tuple of str
+        The method in sentences with its sources.
+    cautions : tuple of str
+        What the papers do not prove.
+    lots : tuple of LotView
+        In the order of the tender.
+    exchange : ExchangeView or None
+        Exchange rates, where the tender states any.
+    findings : tuple of FindingView
+        All findings, weightiest first.
+    record : RecordView
+        Versions and fingerprints.
+    figures : mapping of str to ShownFigure
+        Every figure behind every amount, by id, operands before results.
+    """
+
+    reference: str
+    title: str
+    buyer: str
+    currency: str
+    opening_date: str
+    remark: str
+    recommendation: str
+    rules: tuple[str, ...]
+    method: tuple[str, ...]
+    cautions: tuple[str, ...]
+    lots: tuple[LotView, ...]
+    exchange: ExchangeView | None
+    findings: tuple[FindingView, ...]
+    record: RecordView
+    figures: Mapping[str, ShownFigure]

@@ -1,0 +1,1 @@
+"""Report templates and starter files, shipped inside the wheel."""
