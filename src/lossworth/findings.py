@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import unicodedata
 from collections.abc import Iterable
 from dataclasses import dataclass
 from enum import StrEnum
@@ -133,11 +134,15 @@ class Finding:
         return self.fix or KINDS[self.kind].remedy
 
     @property
-    def statement(self) -> str:
-        """Field, rule and the value as read, without place and remedy."""
+    def reason(self) -> str:
+        """Field, rule and the value as read."""
         text = f"{one_line(self.field)}: {one_line(self.rule)}"
-        if self.got is not None:
-            text += f', got "{quoted(self.got)}"'
+        return text if self.got is None else f'{text}, got "{quoted(self.got)}"'
+
+    @property
+    def statement(self) -> str:
+        """The reason with the offer concerned, without place and remedy."""
+        text = self.reason
         concerned = [one_line(self.bidder)] if self.bidder else []
         if self.lot:
             concerned.append(f"lot {one_line(self.lot)}")
@@ -161,9 +166,15 @@ def one_line(text: str) -> str:
     Returns
     -------
     str
-        The text with every unprintable character written as an escape.
+        The text with every unprintable character written as an escape and every kind of space as a space.
     """
-    return "".join(c if c.isprintable() else c.encode("unicode_escape").decode("ascii") for c in text)
+    return "".join(c if c.isprintable() else _visible(c) for c in text)
+
+
+def _visible(character: str) -> str:
+    if unicodedata.category(character) == "Zs":  # non-breaking and thin spaces
+        return " "
+    return character.encode("unicode_escape").decode("ascii")
 
 
 def quoted(text: str) -> str:

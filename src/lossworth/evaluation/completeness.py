@@ -1,0 +1,83 @@
+"""Does an offer state everything that its evaluation needs? A missing loss is never zero."""
+
+from __future__ import annotations
+
+from collections.abc import Collection, Iterable
+
+from ..findings import Effect, Finding
+from ..records.bid import Offer, is_naturally_cooled
+from ..records.tender import Lot, Tender
+from .result import LotRates
+
+__all__ = ["check_completeness"]
+
+_NEEDED = (("unit_price", "unit price"), ("no_load_loss_kw", "no-load loss"), ("load_loss_kw", "load loss"))
+
+
+def check_completeness(
+    offer: Offer, lot: Lot, rates: LotRates, tender: Tender, known: Collection[Finding]
+) -> tuple[Finding, ...]:
+    """Findings on what an offer does not state.
+
+    Parameters
+    ----------
+    offer : Offer
+        One offer, as read.
+    lot : Lot
+        Its lot, for the cooling.
+    rates : LotRates
+        The rates, which say whether the auxiliary loss is needed.
+    tender : Tender
+        For the currencies that can be converted.
+    known : collection of Finding
+        What intake already found on this offer; nothing is reported twice.
+
+    Returns
+    -------
+    tuple of Finding
+        Missing values, an unknown currency, and what is said of the auxiliary loss.
+    """
+    reported = {finding.field for finding in known if finding.effect is not Effect.NOTE}
+    found = (*_missing(offer), *_currency(offer, tender), *_auxiliary(offer, lot, rates))
+    return tuple(finding for finding in found if finding.field not in reported)
+
+
+def _missing(offer: Offer) -> Iterable[Finding]:
+    for name, label in _NEEDED:
+        if getattr(offer, name) is None:
+            place = offer.columns.get(name, offer.place)
+            yield Finding("value-missing", label, "must be stated", place, "", offer.bidder.value, offer.lot.value)
+
+
+def _currency(offer: Offer, tender: Tender) -> Iterable[Finding]:
+    who = (offer.bidder.value, offer.lot.value)
+    if offer.currency is None:
+        yield Finding(
+            "value-missing", "currency", "must be stated", offer.columns.get("currency", offer.place), "", *who
+        )
+        return
+    rates = {} if tender.exchange is None else tender.exchange.rates
+    if offer.currency.value != tender.identity.currency.value and offer.currency.value not in rates:
+        known = ", ".join([tender.identity.currency.value, *rates])
+        rule = f"must be a currency with an announced exchange rate ({known})"
+        yield Finding("currency-unknown", "currency", rule, offer.currency.place, offer.currency.value, *who)
+
+
+def _auxiliary(offer: Offer, lot: Lot, rates: LotRates) -> Iterable[Finding]:
+    who = (offer.bidder.value, offer.lot.value)
+    place = offer.columns.get("auxiliary_loss_kw", offer.place)
+    stated = offer.auxiliary_loss_kw
+    if rates.auxiliary is None:
+        if stated is not None and stated.value > 0:
+            rule = "is stated, but the tender values none"
+            yield Finding("auxiliary-loss-not-valued", "auxiliary loss", rule, place, stated.text, *who)
+        return
+    if stated is not None:
+        return
+    cooling = (offer.cooling or lot.cooling).value
+    if is_naturally_cooled(cooling):
+        rule = f"blank, and zero by rule for {cooling}"
+        yield Finding("auxiliary-loss-zero-by-rule", "auxiliary loss", rule, place, None, *who)
+    else:
+        rule = f"must be stated for a unit cooled {cooling}"
+        yield Finding("value-missing", "auxiliary loss", rule, place, "", *who)

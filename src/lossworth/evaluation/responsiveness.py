@@ -1,0 +1,145 @@
+"""Is an offer complete, and does it keep the limits of its lot? Small checks of one signature in one tuple."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from decimal import Decimal
+
+from ..findings import Finding, Place
+from ..money import ARITHMETIC
+from ..records.bid import Offer
+from ..records.quantity import Quantity
+from ..records.tender import Lot
+
+__all__ = ["CHECKS", "check_offer", "peak_efficiency_index_percent"]
+
+Check = Callable[[Offer, Lot], Finding | None]
+
+
+def check_offer(offer: Offer, lot: Lot) -> tuple[Finding, ...]:
+    """All findings on the limits of one offer.
+
+    Parameters
+    ----------
+    offer : Offer
+        One offer, as read.
+    lot : Lot
+        The lot with its limits.
+
+    Returns
+    -------
+    tuple of Finding
+        One for each limit that is exceeded or not answered. Guaranteed values are compared unrounded, and no
+        tolerance stands between a guarantee and a limit.
+    """
+    return tuple(finding for check in CHECKS if (finding := check(offer, lot)) is not None)
+
+
+def peak_efficiency_index_percent(no_load_loss_kw: Decimal, load_loss_kw: Decimal, rated_power_kva: Decimal) -> Decimal:
+    """Peak efficiency index of a unit without cooling power at no load.
+
+    Parameters
+    ----------
+    no_load_loss_kw, load_loss_kw : Decimal
+        Guaranteed losses, the load loss at the rated power given. [kW]
+    rated_power_kva : Decimal
+        Rating on which the load loss is based. [kVA]
+
+    Returns
+    -------
+    Decimal
+        PEI = 1 - 2 sqrt(P0 Pk) / Sr. [percent]
+
+    References
+    ----------
+    .. [1] Commission Regulation (EU) No 548/2014, Annex I and II (without the term of the cooling power).
+
+    Examples
+    --------
+    >>> round(peak_efficiency_index_percent(Decimal("15.8"), Decimal(139), Decimal(31500)), 4)
+    Decimal('99.7025')
+    """
+    root = ARITHMETIC.sqrt(ARITHMETIC.multiply(no_load_loss_kw, load_loss_kw))
+    return 100 - ARITHMETIC.divide(200 * root, rated_power_kva)
+
+
+def _finding(kind: str, field: str, rule: str, offer: Offer, place: Place, got: str | None) -> Finding:
+    return Finding(kind, field, rule, place, got, offer.bidder.value, offer.lot.value)
+
+
+def _shown(quantity: Quantity) -> str:
+    return f"{quantity.text} {quantity.unit}"
+
+
+def _not_answered(field: str, column: str, rule: str, offer: Offer) -> Finding:
+    return _finding("limit-not-answered", field, rule, offer, offer.columns.get(column, offer.place), None)
+
+
+def check_no_load_loss(offer: Offer, lot: Lot) -> Finding | None:
+    """Guaranteed no-load loss at most the lot's maximum."""
+    limit, loss = lot.maximum_no_load_loss_kw, offer.no_load_loss_kw
+    if limit is None or loss is None or loss.value <= limit.value:
+        return None
+    rule = f"must not exceed {limit.value} kW ({limit.place})"
+    return _finding("no-load-loss-above-maximum", "no-load loss", rule, offer, loss.place, _shown(loss))
+
+
+def check_load_loss(offer: Offer, lot: Lot) -> Finding | None:
+    """Guaranteed load loss at most the lot's maximum."""
+    limit, loss = lot.maximum_load_loss_kw, offer.load_loss_kw
+    if limit is None or loss is None or loss.value <= limit.value:
+        return None
+    rule = f"must not exceed {limit.value} kW ({limit.place})"
+    return _finding("load-loss-above-maximum", "load loss", rule, offer, loss.place, _shown(loss))
+
+
+def check_peak_efficiency_index(offer: Offer, lot: Lot) -> Finding | None:
+    """Peak efficiency index that follows from the guaranteed losses at least the lot's minimum."""
+    limit, no_load, load = lot.minimum_peak_efficiency_index_percent, offer.no_load_loss_kw, offer.load_loss_kw
+    if limit is None or no_load is None or load is None:
+        return None
+    # compared as squares, which are exact: P0 Pk <= ((1 - PEI) Sr / 2)^2
+    half = (100 - limit.value) * lot.rated_power_kva.value / 200
+    if no_load.value * load.value <= half * half:
+        return None
+    index = peak_efficiency_index_percent(no_load.value, load.value, lot.rated_power_kva.value)
+    rule = f"must be at least {limit.value} % ({limit.place})"
+    shown = f"{index:.4f} % from {_shown(no_load)} and {_shown(load)}"
+    return _finding("efficiency-below-minimum", "peak efficiency index", rule, offer, load.place, shown)
+
+
+def check_impedance(offer: Offer, lot: Lot) -> Finding | None:
+    """Guaranteed impedance inside the lot's range."""
+    specified, tolerance = lot.impedance_percent, lot.impedance_tolerance_percentage_points
+    if specified is None or tolerance is None:
+        return None
+    rule = f"must be {specified.value} % within {tolerance.value} percentage points ({specified.place})"
+    offered = offer.impedance_percent
+    if offered is None:
+        return _not_answered("impedance", "impedance_percent", rule, offer)
+    if abs(offered.value - specified.value) <= tolerance.value:
+        return None
+    return _finding("impedance-outside", "impedance", rule, offer, offered.place, _shown(offered))
+
+
+def check_delivery(offer: Offer, lot: Lot) -> Finding | None:
+    """Delivery at the latest when the lot says."""
+    latest = lot.latest_delivery_weeks
+    if latest is None:
+        return None
+    rule = f"must not exceed {latest.value} weeks ({latest.place})"
+    offered = offer.delivery_weeks
+    if offered is None:
+        return _not_answered("delivery", "delivery_weeks", rule, offer)
+    if offered.value <= latest.value:
+        return None
+    return _finding("delivery-too-late", "delivery", rule, offer, offered.place, _shown(offered))
+
+
+CHECKS: tuple[Check, ...] = (
+    check_no_load_loss,
+    check_load_loss,
+    check_peak_efficiency_index,
+    check_impedance,
+    check_delivery,
+)

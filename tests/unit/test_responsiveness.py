@@ -1,0 +1,93 @@
+"""Limits: the guarantee at the limit passes, one last digit beyond it fails, and silence is not consent."""
+
+from __future__ import annotations
+
+from decimal import Decimal as D
+
+import pytest
+
+from lossworth.evaluation.responsiveness import check_offer, peak_efficiency_index_percent
+from support import records as make
+
+LIMITS = {
+    "maximum_no_load_loss_kw": make.quantity("0.130", "kW"),
+    "maximum_load_loss_kw": make.quantity("1.250", "kW"),
+    "impedance_percent": make.quantity("12.5", "%"),
+    "impedance_tolerance_percentage_points": make.quantity("0.5", "%"),
+    "latest_delivery_weeks": make.quantity("36", "weeks"),
+}
+AT_THE_LIMIT = {
+    "no_load_loss_kw": make.quantity("0.130", "kW"),
+    "load_loss_kw": make.quantity("1.250", "kW"),
+    "impedance_percent": make.quantity("13.0", "%"),
+    "delivery_weeks": make.quantity("36", "weeks"),
+}
+
+
+def kinds(**changes) -> list[str]:
+    """Kinds of the findings on an offer at all limits, with changes."""
+    return [f.kind for f in check_offer(make.offer(**(AT_THE_LIMIT | changes)), make.lot(**LIMITS))]
+
+
+def test_check_offer__at_the_limits():
+    """A guarantee equal to its limit passes."""
+    assert kinds() == []
+
+
+@pytest.mark.parametrize(
+    ("field", "value", "kind"),
+    [
+        ("no_load_loss_kw", "0.131", "no-load-loss-above-maximum"),
+        ("load_loss_kw", "1.251", "load-loss-above-maximum"),
+        ("impedance_percent", "13.01", "impedance-outside"),
+        ("impedance_percent", "11.99", "impedance-outside"),
+        ("delivery_weeks", "36.1", "delivery-too-late"),
+    ],
+)
+def test_check_offer__one_digit_beyond(field, value, kind):
+    """One unit of the last digit beyond a limit fails."""
+    assert kinds(**{field: make.quantity(value)}) == [kind]
+
+
+@pytest.mark.parametrize("field", ["impedance_percent", "delivery_weeks"])
+def test_check_offer__limit_not_answered(field):
+    """A value that a limit needs and the bidder does not state is a finding."""
+    assert kinds(**{field: None}) == ["limit-not-answered"]
+
+
+def test_check_offer__no_limits():
+    """Without limits nothing is asked."""
+    assert check_offer(make.offer(), make.lot()) == ()
+
+
+def test_check_offer__several_faults_at_once():
+    """All faults come at once."""
+    assert kinds(no_load_loss_kw=make.quantity("1"), load_loss_kw=make.quantity("9")) == [
+        "no-load-loss-above-maximum",
+        "load-loss-above-maximum",
+    ]
+
+
+@pytest.mark.parametrize(
+    ("no_load", "load", "index"),
+    [
+        ("15.2", "134", "99.7135"),
+        ("14.4", "57.2", "99.8178"),
+        ("14.4", "141.892", "99.7130"),
+        ("15.8", "139", "99.7025"),
+    ],
+)
+def test_peak_efficiency_index_percent__demo(no_load, load, index):
+    """Peak efficiency indexes of lot 4 of the demonstration (invented bids; formula of Regulation (EU) 548/2014)."""
+    assert round(peak_efficiency_index_percent(D(no_load), D(load), D(31500)), 4) == D(index)
+
+
+def test_check_peak_efficiency_index__exact_at_the_limit():
+    """P0 Pk exactly at the square of the limit passes, a hair more fails."""
+    lot = make.lot(
+        minimum_peak_efficiency_index_percent=make.quantity("99"), rated_power_kva=make.quantity("200", "kVA")
+    )
+    at_limit = make.offer(no_load_loss_kw=make.quantity("0.5"), load_loss_kw=make.quantity("2"))
+    beyond = make.offer(no_load_loss_kw=make.quantity("0.5"), load_loss_kw=make.quantity("2.000001"))
+    assert check_offer(at_limit, lot) == ()
+    assert [f.kind for f in check_offer(beyond, lot)] == ["efficiency-below-minimum"]
