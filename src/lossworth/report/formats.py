@@ -2,13 +2,16 @@
 
 from __future__ import annotations
 
-from decimal import ROUND_HALF_UP, Decimal
+from decimal import ROUND_HALF_UP, Context, Decimal
 
 __all__ = ["MINUS", "THIN_SPACE", "amount", "number", "percent", "plain", "significant"]
 
 #: Between groups of three digits; does not break.
 THIN_SPACE = "\u202f"
 MINUS = "\u2212"
+
+# More digits than any figure of the trail has; never the caller's context, which may have fewer.
+_PRINTING = Context(prec=60)
 
 
 def amount(value: Decimal, places: int = 2) -> str:
@@ -26,8 +29,8 @@ def amount(value: Decimal, places: int = 2) -> str:
     str
         ``"1,103,740.00"``.
     """
-    text = f"{value.quantize(Decimal(1).scaleb(-places), rounding=ROUND_HALF_UP):,f}"
-    return text.replace("-", MINUS)
+    rounded = value.quantize(Decimal(1).scaleb(-places), rounding=ROUND_HALF_UP, context=_PRINTING)
+    return f"{rounded if rounded else abs(rounded):,f}".replace("-", MINUS)
 
 
 def number(value: Decimal) -> str:
@@ -43,7 +46,7 @@ def number(value: Decimal) -> str:
     str
         ``"0.058"``, ``"31,500"``.
     """
-    value = value.normalize()
+    value = value.normalize(_PRINTING)
     return f"{value:,f}".replace("-", MINUS)
 
 
@@ -64,7 +67,8 @@ def significant(value: Decimal, digits: int) -> str:
     """
     if not value:
         return "0"
-    return number(value.quantize(Decimal(1).scaleb(value.adjusted() - digits + 1), rounding=ROUND_HALF_UP))
+    last = Decimal(1).scaleb(value.adjusted() - digits + 1)
+    return number(value.quantize(last, rounding=ROUND_HALF_UP, context=_PRINTING))
 
 
 def percent(value: Decimal, places: int = 2) -> str:
@@ -100,6 +104,6 @@ def plain(value: Decimal) -> str:
     """
     exponent = int(value.as_tuple().exponent)
     if len(value.as_tuple().digits) > 12 and exponent < -6:
-        value = value.quantize(Decimal(1).scaleb(max(exponent, value.adjusted() - 11)), rounding=ROUND_HALF_UP)
-        value = value.normalize()
+        last = Decimal(1).scaleb(max(exponent, value.adjusted() - 11))
+        value = value.quantize(last, rounding=ROUND_HALF_UP, context=_PRINTING).normalize(_PRINTING)
     return f"{value:f}"

@@ -12,10 +12,12 @@ __all__ = [
     "ExchangeView",
     "FindingView",
     "InputFile",
+    "LotRatesView",
     "LotView",
     "MarginView",
     "OfferView",
     "Particular",
+    "RatesReport",
     "RatesView",
     "RecordView",
     "ShownFigure",
@@ -104,13 +106,30 @@ class MarginView:
 
 @dataclass(frozen=True, slots=True)
 class Particular:
-    """One value of an offer as read: what the bidder stated and where it stands."""
+    """One value of an offer as read: what the bidder stated and where it stands.
+
+    Parameters
+    ----------
+    name : str
+        What it is.
+    text : str
+        The characters as they stood; empty where nothing was stated.
+    unit : str
+        Unit as stated.
+    place : str
+        Where it stood.
+    figure : str or None
+        Id of the figure that enters the costs, where it does.
+    value : Decimal or None
+        The number as read, in the unit as stated; None for words and for what was not stated.
+    """
 
     name: str
     text: str
     unit: str
     place: str
     figure: str | None
+    value: Decimal | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -324,4 +343,35 @@ class EvaluationView:
     exchange: ExchangeView | None
     findings: tuple[FindingView, ...]
     record: RecordView
+    figures: Mapping[str, ShownFigure]
+
+
+@dataclass(frozen=True, slots=True)
+class LotRatesView:
+    """Rates of one lot for the planner: those that the tender uses, and a study beside announced ones."""
+
+    id: str
+    description: str
+    used: RatesView
+    study: RatesView | None
+
+
+@dataclass(frozen=True, slots=True)
+class RatesReport:
+    """What `lossworth rates` shows: no offers, no ranking.
+
+    Parameters
+    ----------
+    reference, title, currency : str
+        Identity of the tender.
+    lots : tuple of LotRatesView
+        In the order of the tender.
+    figures : mapping of str to ShownFigure
+        Every figure behind the rates, operands before results.
+    """
+
+    reference: str
+    title: str
+    currency: str
+    lots: tuple[LotRatesView, ...]
     figures: Mapping[str, ShownFigure]

@@ -1,0 +1,278 @@
+"""From a result to the view: the only step at which figures are chosen, ordered and worded."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from decimal import ROUND_HALF_UP, Context, Decimal
+
+from ..evaluation.owning_cost import auxiliary_loss, loss_in_kw
+from ..evaluation.pricing import quoted_price
+from ..evaluation.result import (
+    EvaluatedOffer,
+    Evaluation,
+    LotEvaluation,
+    LotRates,
+    Margin,
+    OwningCost,
+    Status,
+    YearTable,
+)
+from ..findings import KINDS, Effect, Finding, one_line
+from ..records.bid import Offer
+from ..records.quantity import Quantity
+from ..records.tender import Tender
+from ..trail import Figure
+from .figure_text import shown_figures
+from .formats import number
+from .view import (
+    CostView,
+    EvaluationView,
+    ExchangeView,
+    FindingView,
+    LotView,
+    MarginView,
+    OfferView,
+    Particular,
+    RatesView,
+    RecordView,
+    YearColumn,
+    YearTableView,
+)
+from .wording import CAUTIONS, METHOD, limits, lot_recommendation, rate_sources, recommendation, rules
+
+__all__ = ["build_view", "rates_view"]
+
+_PARTICULARS = (
+    ("unit_price", "unit price"),
+    ("no_load_loss_kw", "no-load loss P0"),
+    ("load_loss_kw", "load loss Pk"),
+    ("auxiliary_loss_kw", "auxiliary loss Paux"),
+    ("total_loss_kw", "total loss"),
+    ("impedance_percent", "impedance"),
+    ("delivery_weeks", "delivery"),
+    ("quantity", "quantity"),
+)
+_COLUMNS = (
+    ("year", "year", "1"),
+    ("discount_factor", "discount factor", "1"),
+    ("energy_price_per_kwh", "energy price", "{currency}/kWh"),
+    ("demand_charge_per_kw_year", "demand charge", "{currency}/(kW year)"),
+    ("peak_load_pu", "peak load, per unit", "1"),
+    ("no_load", "no-load, present value", "{currency}/kW"),
+    ("load", "load, present value", "{currency}/kW"),
+    ("auxiliary", "auxiliary, present value", "{currency}/kW"),
+)
+_SIX_DIGITS = Context(prec=6, rounding=ROUND_HALF_UP)
+
+
+def build_view(evaluation: Evaluation, record: RecordView) -> EvaluationView:
+    """View of an evaluation, from which every paper is made.
+
+    Parameters
+    ----------
+    evaluation : Evaluation
+        The result.
+    record : RecordView
+        Versions and fingerprints, which come from outside.
+
+    Returns
+    -------
+    EvaluationView
+        Figures chosen, ordered and worded.
+    """
+    tender = evaluation.tender
+    identity = tender.identity
+    currency = identity.currency.value
+    return EvaluationView(
+        reference=one_line(identity.reference.value),
+        title=one_line(identity.title.value),
+        buyer=one_line(identity.buyer.value),
+        currency=currency,
+        opening_date="" if identity.opening_date is None else identity.opening_date.isoformat(),
+        remark="" if identity.remark is None else one_line(identity.remark.value),
+        recommendation=recommendation(evaluation.lots),
+        rules=rules(tender),
+        method=METHOD,
+        cautions=CAUTIONS,
+        lots=tuple(_lot(tender, lot, evaluation) for lot in evaluation.lots),
+        exchange=_exchange(tender, evaluation),
+        findings=tuple(_finding(finding) for finding in evaluation.findings),
+        record=record,
+        figures=shown_figures(_roots(evaluation), currency),
+    )
+
+
+def _roots(evaluation: Evaluation) -> Iterable[Figure]:
+    yield from evaluation.exchange_rates.values()
+    for lot in evaluation.lots:
+        yield lot.quantity
+        yield from (rate for rate in (lot.rates.no_load, lot.rates.load, lot.rates.auxiliary) if rate is not None)
+        for offer in lot.offers:
+            yield from (figure for figure in _entering(offer, lot).values() if figure is not None)
+            for cost in (offer.per_unit, offer.lot):
+                yield from (figure for figure in _amounts(cost) if figure is not None)
+            if offer.margin is not None:
+                yield offer.margin.amount
+
+
+def _amounts(cost: OwningCost) -> tuple[Figure | None, ...]:
+    return (cost.evaluated_price, cost.no_load_cost, cost.load_cost, cost.auxiliary_cost, cost.total_owning_cost)
+
+
+def _entering(offer: EvaluatedOffer, lot: LotEvaluation) -> dict[str, Figure | None]:
+    """The figures of an offer that enter its costs."""
+    read = offer.offer
+    return {
+        "unit_price": quoted_price(read),
+        "no_load_loss": loss_in_kw(read, "no_load_loss_kw", "no-load loss", read.no_load_loss_kw),
+        "load_loss": loss_in_kw(read, "load_loss_kw", "load loss", read.load_loss_kw),
+        "auxiliary_loss": None if lot.rates.auxiliary is None else auxiliary_loss(read, lot.lot),
+    }
+
+
+def _lot(tender: Tender, lot: LotEvaluation, evaluation: Evaluation) -> LotView:
+    currency = tender.identity.currency.value
+    power = lot.lot.rated_power_kva
+    return LotView(
+        id=lot.lot.id,
+        description=one_line(lot.lot.description.value),
+        quantity=int(lot.quantity.value),
+        quantity_figure=lot.quantity.id,
+        rated_power=f"{number(power.stated)} {power.unit}",
+        limits=limits(lot.lot),
+        rates=_rates(tender, lot),
+        offers=tuple(_offer(offer, lot, evaluation) for offer in lot.offers),
+        recommendation=lot_recommendation(lot, currency),
+    )
+
+
+def _rates(tender: Tender, lot: LotEvaluation) -> RatesView:
+    return rates_view(lot.rates, rate_sources(tender, lot.lot), tender.identity.currency.value)
+
+
+def rates_view(rates: LotRates, sources: tuple[str, ...], currency: str) -> RatesView:
+    """Rates of a lot, as ids of their figures, with their year table.
+
+    Parameters
+    ----------
+    rates : LotRates
+        Announced or derived.
+    sources : tuple of str
+        Where they come from, in sentences.
+    currency : str
+        Evaluation currency.
+
+    Returns
+    -------
+    RatesView
+        Ready for the papers.
+    """
+    return RatesView(
+        basis=rates.basis.value,
+        no_load=rates.no_load.id,
+        load=rates.load.id,
+        auxiliary=None if rates.auxiliary is None else rates.auxiliary.id,
+        unit=rates.no_load.unit,
+        sources=sources,
+        year_table=None if rates.table is None else _year_table(rates.table, currency),
+    )
+
+
+def _year_table(table: YearTable, currency: str) -> YearTableView:
+    columns = tuple(
+        YearColumn(name, heading, unit.format(currency=currency), table.columns[name])
+        for name, heading, unit in _COLUMNS
+    )
+    return YearTableView(table.id, columns, {name: figure.id for name, figure in table.inputs.items()})
+
+
+def _offer(offer: EvaluatedOffer, lot: LotEvaluation, evaluation: Evaluation) -> OfferView:
+    entering = {name: None if figure is None else figure.id for name, figure in _entering(offer, lot).items()}
+    currency = "" if offer.offer.currency is None else offer.offer.currency.value
+    exchange = evaluation.exchange_rates.get(currency)
+    tied = sum(other.rank == offer.rank for other in lot.ranked) > 1
+    return OfferView(
+        bidder=one_line(offer.bidder),
+        status=offer.status.value,
+        rank=offer.rank,
+        rank_text="–" if offer.rank is None else f"{offer.rank} =" if tied else str(offer.rank),
+        particulars=_particulars(offer.offer, entering),
+        unit_price=entering["unit_price"],
+        exchange_rate=None if exchange is None else exchange.id,
+        no_load_loss=entering["no_load_loss"],
+        load_loss=entering["load_loss"],
+        auxiliary_loss=entering["auxiliary_loss"],
+        currency=currency,
+        per_unit=_cost(offer.per_unit),
+        lot=_cost(offer.lot),
+        margin=None if offer.margin is None else _margin(offer.margin),
+        above_winner=offer.above_winner,
+        reasons=() if offer.status is Status.RANKED else tuple(_reasons(offer.findings)),
+    )
+
+
+def _reasons(findings: Iterable[Finding]) -> Iterable[str]:
+    for finding in findings:
+        if finding.effect in (Effect.NOT_EVALUATED, Effect.NON_RESPONSIVE):
+            yield f"{finding.reason} — {finding.place}" if finding.place else finding.reason
+
+
+def _particulars(offer: Offer, entering: dict[str, str | None]) -> tuple[Particular, ...]:
+    shown = []
+    figures = {
+        "unit_price": entering["unit_price"],
+        "no_load_loss_kw": entering["no_load_loss"],
+        "load_loss_kw": entering["load_loss"],
+        "auxiliary_loss_kw": entering["auxiliary_loss"],
+    }
+    for name, label in _PARTICULARS:
+        stated = getattr(offer, name)
+        if isinstance(stated, Quantity):
+            place, figure = str(stated.place), figures.get(name)
+            shown.append(Particular(label, one_line(stated.text), stated.unit, place, figure, stated.stated))
+        elif name in offer.columns:
+            shown.append(Particular(label, "", "", str(offer.columns[name]), None))
+    for label, entry in (("cooling", offer.cooling), ("remark", offer.remark)):
+        if entry is not None:
+            shown.append(Particular(label, one_line(entry.value), "", str(entry.place), None))
+    return tuple(shown)
+
+
+def _cost(cost: OwningCost) -> CostView:
+    return CostView(*(None if figure is None else figure.id for figure in _amounts(cost)))
+
+
+def _margin(margin: Margin) -> MarginView:
+    def six(value: Decimal | None) -> Decimal | None:
+        return None if value is None else _SIX_DIGITS.plus(value)
+
+    percent = margin.percent_of_winner.quantize(Decimal("0.01"), rounding=ROUND_HALF_UP)
+    return MarginView(
+        one_line(margin.to), margin.amount.id, percent, six(margin.no_load_loss_kw), six(margin.load_loss_kw)
+    )
+
+
+def _exchange(tender: Tender, evaluation: Evaluation) -> ExchangeView | None:
+    stated = tender.exchange
+    if stated is None:
+        return None
+    return ExchangeView(
+        source=one_line(stated.source.value),
+        kind=one_line(stated.kind.value),
+        date=stated.date.isoformat(),
+        evidence=one_line(stated.evidence.value),
+        rates=tuple((code, figure.id) for code, figure in evaluation.exchange_rates.items()),
+    )
+
+
+def _finding(finding: Finding) -> FindingView:
+    return FindingView(
+        kind=finding.kind,
+        title=KINDS[finding.kind].title,
+        effect=finding.effect.value,
+        place=str(finding.place) if finding.place else "",
+        bidder=one_line(finding.bidder or ""),
+        lot=one_line(finding.lot or ""),
+        statement=finding.statement,
+        remedy=finding.remedy,
+    )

@@ -1,0 +1,136 @@
+"""The result as data: evaluation.json, for other tools and for the reader in ten years."""
+
+from __future__ import annotations
+
+import json
+from decimal import Decimal
+from typing import Any
+
+from .formats import plain
+from .view import CostView, EvaluationView, LotView, MarginView, OfferView
+
+__all__ = ["FORMAT_VERSION", "result_text"]
+
+FORMAT_VERSION = 1
+
+
+def result_text(view: EvaluationView) -> str:
+    """The evaluation as JSON text.
+
+    Parameters
+    ----------
+    view : EvaluationView
+        The view.
+
+    Returns
+    -------
+    str
+        UTF-8 text with a final newline; amounts are decimal strings, so that no reader loses a cent.
+    """
+    content = {
+        "format_version": FORMAT_VERSION,
+        "tender": {
+            "reference": view.reference,
+            "title": view.title,
+            "buyer": view.buyer,
+            "currency": view.currency,
+            "opening_date": view.opening_date or None,
+            "remark": view.remark or None,
+        },
+        "recommendation": view.recommendation,
+        "rules": list(view.rules),
+        "lots": [_lot(view, lot) for lot in view.lots],
+        "exchange": _exchange(view),
+        "findings": [
+            {
+                "kind": finding.kind,
+                "effect": finding.effect,
+                "place": finding.place or None,
+                "bidder": finding.bidder or None,
+                "lot": finding.lot or None,
+                "statement": finding.statement,
+                "remedy": finding.remedy,
+            }
+            for finding in view.findings
+        ],
+        "cautions": list(view.cautions),
+        "inputs": [{"path": item.path, "sha256": item.sha256} for item in view.record.inputs],
+        "generated_at": view.record.generated_at,
+        "tool_version": view.record.tool_version,
+    }
+    return json.dumps(content, ensure_ascii=False, indent=2) + "\n"
+
+
+def _value(view: EvaluationView, figure: str | None) -> str | None:
+    return None if figure is None else plain(view.figures[figure].value)
+
+
+def _lot(view: EvaluationView, lot: LotView) -> dict[str, Any]:
+    rates = lot.rates
+    return {
+        "id": lot.id,
+        "description": lot.description,
+        "quantity": lot.quantity,
+        "rates": {
+            "A": _value(view, rates.no_load),
+            "B": _value(view, rates.load),
+            "C": _value(view, rates.auxiliary),
+            "unit": rates.unit,
+            "basis": rates.basis,
+        },
+        "recommendation": lot.recommendation,
+        "offers": [_offer(view, offer) for offer in lot.offers],
+    }
+
+
+def _offer(view: EvaluationView, offer: OfferView) -> dict[str, Any]:
+    return {
+        "bidder": offer.bidder,
+        "status": offer.status,
+        "rank": offer.rank,
+        **_costs(view, offer.lot),
+        "per_unit": _costs(view, offer.per_unit),
+        "margin": _margin(view, offer.margin),
+        "as_read": [
+            {"name": item.name, "text": item.text, "unit": item.unit, "place": item.place} for item in offer.particulars
+        ],
+        "reasons": list(offer.reasons),
+    }
+
+
+def _costs(view: EvaluationView, cost: CostView) -> dict[str, str | None]:
+    return {
+        "evaluated_price": _value(view, cost.evaluated_price),
+        "no_load_cost": _value(view, cost.no_load_cost),
+        "load_cost": _value(view, cost.load_cost),
+        "auxiliary_cost": _value(view, cost.auxiliary_cost),
+        "total_owning_cost": _value(view, cost.total_owning_cost),
+    }
+
+
+def _margin(view: EvaluationView, margin: MarginView | None) -> dict[str, Any] | None:
+    if margin is None:
+        return None
+
+    def text(value: Decimal | None) -> str | None:
+        return None if value is None else plain(value)
+
+    return {
+        "to": margin.to,
+        "amount": _value(view, margin.amount),
+        "percent_of_winner": plain(margin.percent_of_winner),
+        "no_load_loss_kw": text(margin.no_load_loss_kw),
+        "load_loss_kw": text(margin.load_loss_kw),
+    }
+
+
+def _exchange(view: EvaluationView) -> dict[str, Any] | None:
+    if view.exchange is None:
+        return None
+    return {
+        "source": view.exchange.source,
+        "kind": view.exchange.kind,
+        "date": view.exchange.date,
+        "evidence": view.exchange.evidence,
+        "rates": {code: _value(view, figure) for code, figure in view.exchange.rates},
+    }

@@ -1,0 +1,218 @@
+"""Sentences of the papers: recommendation, rules, method, cautions. Wording only; the figures come from the result."""
+
+from __future__ import annotations
+
+from ..evaluation.result import LotEvaluation
+from ..findings import one_line
+from ..records.quantity import Entry
+from ..records.tender import Derivation, Lot, Tender
+from .formats import amount, number, percent
+
+__all__ = [
+    "CAUTIONS",
+    "METHOD",
+    "derivation_sources",
+    "limits",
+    "lot_recommendation",
+    "rate_sources",
+    "recommendation",
+    "rules",
+]
+
+METHOD = (
+    "Total owning cost = evaluated price + A × P0 + B × Pk + C × Paux, per unit; the lot is the quantity times the "
+    "unit. P0 is the guaranteed no-load loss, Pk the guaranteed load loss at the rating and reference temperature on "
+    "which it is guaranteed, Paux the auxiliary loss of fans and pumps.",
+    "A, B and C are present values of one kilowatt of loss over the evaluation period. The form of the evaluation is "
+    "that of REA Bulletin 65-2 (1978) and RUS Bulletin 1724E-301 (1997); A and B are used likewise in IEC TS 60076-20 "
+    "and IEEE C57.120 (both from memory).",
+    "Announced rates are inputs and alone value the losses. Derived rates are sums over the years: discount factor × "
+    "(energy price × hours + demand charge) for A; the load loss rate B weights the energy with the loss factor and "
+    "the demand charge with the squared peak responsibility, both times the squared peak load of the year.",
+    "The loss factor, where it is not stated, is k × LF + (1 − k) × LF², LF being the load factor and k the "
+    "coefficient that the tender states (form: Gonen, Electric Power Distribution System Engineering, Ex. 2.9, "
+    "with k = 0.3).",
+    "Costs are computed in exact decimals and ranked on money rounded as the tender states; equal amounts are ties.",
+    "Limits are compared with the guaranteed values unrounded. Peak efficiency index = 1 − 2 √(P0 × Pk) / Sr "
+    "(Commission Regulation (EU) No 548/2014, Annex I and II, without cooling power at no load).",
+)
+
+CAUTIONS = (
+    "The capitalized losses serve the comparison only; what is paid is the contract price.",
+    "Guaranteed values are the bidders' statements; they need type and routine tests to be relied upon.",
+    "The result is no more certain than the announced rates and the guarantees behind it.",
+    "Procurement law, the tender documents and local codes govern; a licensed engineer decides.",
+)
+
+
+def rules(tender: Tender) -> tuple[str, ...]:
+    """The rules of the tender that the evaluation applied.
+
+    Parameters
+    ----------
+    tender : Tender
+        As announced.
+
+    Returns
+    -------
+    tuple of str
+        One sentence a rule.
+    """
+    stated = tender.rules
+    currency = tender.identity.currency.value
+    sentences = [
+        f"Money is {stated.rounding}, applied to {stated.rounding_applies_to.value} ({stated.place}).",
+        f"The evaluation currency is {currency}; only prices are converted, since the rates are in {currency} already.",
+        "A missing loss is not zero: an offer without it is not evaluated. The auxiliary loss of a unit without fans "
+        "and pumps is zero where it is left blank.",
+        "No tolerance stands between a guaranteed value and a limit of the tender.",
+        "Offers with the same total owning cost after rounding share a rank.",
+    ]
+    return tuple(sentences)
+
+
+def limits(stated: Lot) -> tuple[str, ...]:
+    """The limits of a lot, in words.
+
+    Parameters
+    ----------
+    stated : Lot
+        One lot.
+
+    Returns
+    -------
+    tuple of str
+        One phrase a limit that the tender sets.
+    """
+    phrases = []
+    if stated.maximum_no_load_loss_kw:
+        phrases.append(
+            f"no-load loss at most {number(stated.maximum_no_load_loss_kw.stated)} "
+            f"{stated.maximum_no_load_loss_kw.unit}"
+        )
+    if stated.maximum_load_loss_kw:
+        phrases.append(
+            f"load loss at most {number(stated.maximum_load_loss_kw.stated)} {stated.maximum_load_loss_kw.unit}"
+        )
+    if stated.minimum_peak_efficiency_index_percent:
+        phrases.append(f"peak efficiency index at least {number(stated.minimum_peak_efficiency_index_percent.value)} %")
+    if stated.impedance_percent and stated.impedance_tolerance_percentage_points:
+        phrases.append(
+            f"impedance {number(stated.impedance_percent.value)} % within "
+            f"{number(stated.impedance_tolerance_percentage_points.value)} percentage points"
+        )
+    if stated.latest_delivery_weeks:
+        phrases.append(f"delivery within {number(stated.latest_delivery_weeks.value)} weeks")
+    return tuple(phrases)
+
+
+def rate_sources(tender: Tender, lot: Lot) -> tuple[str, ...]:
+    """Where the rates of a lot come from.
+
+    Parameters
+    ----------
+    tender : Tender
+        As announced.
+    lot : Lot
+        One lot, with announced rates or with the announced derivation.
+
+    Returns
+    -------
+    tuple of str
+        Sentences, with the places in the tender file.
+    """
+    if lot.rates is not None:
+        sentences = (f"Announced in the tender per {lot.rates.per} ({lot.rates.place}).",)
+        return sentences + _as_stated(lot.rates.source)
+    if lot.derivation is not None:
+        return derivation_sources(tender, lot.derivation, "The tender announces the derivation")
+    return ()
+
+
+def derivation_sources(tender: Tender, derivation: Derivation, opening: str) -> tuple[str, ...]:
+    """What a derivation of rates rests on.
+
+    Parameters
+    ----------
+    tender : Tender
+        With the economics and loading conditions.
+    derivation : Derivation
+        Which of them are used, and how the rates are rounded.
+    opening : str
+        First words of the sentence, which say whose derivation it is.
+
+    Returns
+    -------
+    tuple of str
+        Sentences, with the places in the tender file.
+    """
+    economics = tender.economics[derivation.economics.value]
+    loading = tender.loading[derivation.loading.value]
+    rounding = "not rounded" if derivation.rounding is None else str(derivation.rounding)
+    sentence = (
+        f"{opening} ({derivation.place}): economics “{derivation.economics}” ({economics.place}), loading condition "
+        f"“{derivation.loading}” ({loading.place}); the rates are {rounding}."
+    )
+    return (sentence, *_as_stated(economics.source), *_as_stated(loading.source))
+
+
+def _as_stated(source: Entry | None) -> tuple[str, ...]:
+    return () if source is None else (f"Source as stated there: {one_line(source.value)}",)
+
+
+def lot_recommendation(lot: LotEvaluation, currency: str) -> str:
+    """The result of one lot in one sentence.
+
+    Parameters
+    ----------
+    lot : LotEvaluation
+        One lot.
+    currency : str
+        Evaluation currency.
+
+    Returns
+    -------
+    str
+        Who has the lowest total owning cost, and by how much.
+    """
+    winners = lot.winners
+    if not winners:
+        return "No offer can be ranked."
+    total = winners[0].lot.total_owning_cost
+    if total is None:
+        raise ValueError("a ranked offer has a total")
+    cost = f"{currency} {amount(total.value)}"
+    if len(winners) > 1:
+        names = " and ".join(one_line(offer.bidder) for offer in winners)
+        return f"{names} tie at the lowest total owning cost, {cost} for the lot; the announced tie order decides."
+    winner = winners[0]
+    sentence = f"{one_line(winner.bidder)} has the lowest total owning cost, {cost} for the lot"
+    if winner.margin is None:
+        return f"{sentence}; no other offer is ranked."
+    return (
+        f"{sentence}, {currency} {amount(winner.margin.amount.value)} ({percent(winner.margin.percent_of_winner)}) "
+        f"less than {one_line(winner.margin.to)}."
+    )
+
+
+def recommendation(lots: tuple[LotEvaluation, ...]) -> str:
+    """The result over all lots in one sentence.
+
+    Parameters
+    ----------
+    lots : tuple of LotEvaluation
+        All lots.
+
+    Returns
+    -------
+    str
+        The lowest total owning cost of each lot, with ties and lots without a ranking named.
+    """
+    parts = []
+    for lot in lots:
+        names = " and ".join(one_line(offer.bidder) for offer in lot.winners)
+        if len(lot.winners) > 1:
+            parts.append(f"lot {lot.lot.id}: {names} (tie)")
+        else:
+            parts.append(f"lot {lot.lot.id}: {names or 'none can be ranked'}")
+    return "Lowest total owning cost by the announced method — " + "; ".join(parts) + "."
