@@ -1,0 +1,34 @@
+"""The record of a run: fingerprints of its inputs, version, time."""
+
+from __future__ import annotations
+
+import datetime
+import hashlib
+from importlib.metadata import version
+
+from ..intake.tender_folder import Inputs
+from ..report.view import InputFile, RecordView
+
+__all__ = ["record_of"]
+
+
+def record_of(inputs: Inputs, time: datetime.datetime) -> RecordView:
+    """Record that makes a run repeatable.
+
+    Parameters
+    ----------
+    inputs : Inputs
+        The files that were read.
+    time : datetime.datetime
+        The time that the papers state, in UTC.
+
+    Returns
+    -------
+    RecordView
+        Paths relative to the tender's folder, with the SHA-256 of each file.
+    """
+    files = tuple(
+        InputFile(file.shown_as, hashlib.sha256(file.path.read_bytes()).hexdigest())
+        for file in (inputs.tender, *inputs.bids)
+    )
+    return RecordView(version("lossworth"), time.strftime("%Y-%m-%dT%H:%M:%SZ"), files)
