@@ -137,7 +137,9 @@ class Finding:
     def reason(self) -> str:
         """Field, rule and the value as read."""
         text = f"{one_line(self.field)}: {one_line(self.rule)}"
-        return text if self.got is None else f'{text}, got "{quoted(self.got)}"'
+        if self.got is None:
+            return text
+        return f'{text}, got "{quoted(self.got)}"' if self.got.strip() else f"{text}, got a blank"
 
     @property
     def statement(self) -> str:
@@ -298,6 +300,13 @@ KINDS: dict[str, FindingKind] = {
             "Two keys say the same thing twice, or one asks for another that is not there.",
             "Keep one of them.",
         ),
+        FindingKind(
+            "tender-key-not-used",
+            "Part of the tender file not used",
+            _NOTE,
+            "A table or a name of the tender file has no effect on this run.",
+            "Nothing to do, unless it was meant for a lot or a file that has another name.",
+        ),
         # Tables of bids
         FindingKind(
             "header-missing",
@@ -333,6 +342,21 @@ KINDS: dict[str, FindingKind] = {
             _NOTE,
             "The table has a column that this evaluation does not use.",
             "Nothing to do, unless the column holds a value under an unusual name.",
+        ),
+        FindingKind(
+            "row-length",
+            "Row longer or shorter than the header",
+            _STOPS,
+            "A row of a csv file has another number of cells than the header, so that values may stand under "
+            "wrong headers.",
+            "Put cells that hold the separating mark into quotes, or separate the columns by semicolons.",
+        ),
+        FindingKind(
+            "row-not-read",
+            "Row not read",
+            _NOTE,
+            "A row below the headers states neither a price nor a loss.",
+            "Nothing to do if the row is a remark.",
         ),
         FindingKind(
             "no-offers",
@@ -441,6 +465,13 @@ KINDS: dict[str, FindingKind] = {
             "The offer stays unranked; whether the bidder may be asked is for the tender's rules to say.",
         ),
         # Notes
+        FindingKind(
+            "value-not-read",
+            "Value not read",
+            _NOTE,
+            "A cell does not hold a readable number, in a column that the evaluation of this lot does not need.",
+            "Nothing to do for the evaluation.",
+        ),
         FindingKind(
             "auxiliary-loss-zero-by-rule",
             "Auxiliary loss zero by rule",

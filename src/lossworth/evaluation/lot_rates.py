@@ -242,7 +242,7 @@ def _columns(inputs: Mapping[str, Figure]) -> dict[str, tuple[float, ...]]:
         discount_rate=fraction("discount_rate_percent"),
         evaluation_period_years=years,
         years_before_end=value("years_before_end"),
-        energy_price_per_kwh=0.0 if by_year else value("energy_price_per_kwh"),
+        energy_price_per_kwh=None if by_year else value("energy_price_per_kwh"),
         energy_price_by_year_per_kwh=by_year or None,
         energy_price_escalation=fraction("energy_price_escalation_percent"),
         escalate_before_year_1=bool(inputs["escalate_before_year_1"].value),

@@ -67,8 +67,11 @@ def _finding(kind: str, field: str, rule: str, offer: Offer, place: Place, got: 
     return Finding(kind, field, rule, place, got, offer.bidder.value, offer.lot.value)
 
 
-def _shown(quantity: Quantity) -> str:
-    return f"{quantity.text} {quantity.unit}"
+def _shown(quantity: Quantity, unit: str) -> str:
+    """As the bidder wrote it, and in the unit of the limit where that reads otherwise."""
+    limited = f"{quantity.value:f} {unit}"
+    stated = f"{quantity.text} {quantity.unit}"
+    return stated if stated == limited else f"{stated} = {limited}"
 
 
 def _not_answered(field: str, column: str, rule: str, offer: Offer) -> Finding:
@@ -81,7 +84,7 @@ def check_no_load_loss(offer: Offer, lot: Lot) -> Finding | None:
     if limit is None or loss is None or loss.value <= limit.value:
         return None
     rule = f"must not exceed {limit.value} kW ({limit.place})"
-    return _finding("no-load-loss-above-maximum", "no-load loss", rule, offer, loss.place, _shown(loss))
+    return _finding("no-load-loss-above-maximum", "no-load loss", rule, offer, loss.place, _shown(loss, "kW"))
 
 
 def check_load_loss(offer: Offer, lot: Lot) -> Finding | None:
@@ -90,7 +93,7 @@ def check_load_loss(offer: Offer, lot: Lot) -> Finding | None:
     if limit is None or loss is None or loss.value <= limit.value:
         return None
     rule = f"must not exceed {limit.value} kW ({limit.place})"
-    return _finding("load-loss-above-maximum", "load loss", rule, offer, loss.place, _shown(loss))
+    return _finding("load-loss-above-maximum", "load loss", rule, offer, loss.place, _shown(loss, "kW"))
 
 
 def check_peak_efficiency_index(offer: Offer, lot: Lot) -> Finding | None:
@@ -104,7 +107,8 @@ def check_peak_efficiency_index(offer: Offer, lot: Lot) -> Finding | None:
         return None
     index = peak_efficiency_index_percent(no_load.value, load.value, lot.rated_power_kva.value)
     rule = f"must be at least {limit.value} % ({limit.place})"
-    shown = f"{index:.4f} % from {_shown(no_load)} and {_shown(load)}"
+    losses = f"{_shown(no_load, 'kW')} and {_shown(load, 'kW')}"
+    shown = f"{index:.4f} % from {losses}"
     return _finding("efficiency-below-minimum", "peak efficiency index", rule, offer, load.place, shown)
 
 
@@ -119,7 +123,7 @@ def check_impedance(offer: Offer, lot: Lot) -> Finding | None:
         return _not_answered("impedance", "impedance_percent", rule, offer)
     if abs(offered.value - specified.value) <= tolerance.value:
         return None
-    return _finding("impedance-outside", "impedance", rule, offer, offered.place, _shown(offered))
+    return _finding("impedance-outside", "impedance", rule, offer, offered.place, _shown(offered, "%"))
 
 
 def check_delivery(offer: Offer, lot: Lot) -> Finding | None:
@@ -133,7 +137,7 @@ def check_delivery(offer: Offer, lot: Lot) -> Finding | None:
         return _not_answered("delivery", "delivery_weeks", rule, offer)
     if offered.value <= latest.value:
         return None
-    return _finding("delivery-too-late", "delivery", rule, offer, offered.place, _shown(offered))
+    return _finding("delivery-too-late", "delivery", rule, offer, offered.place, _shown(offered, "weeks"))
 
 
 CHECKS: tuple[Check, ...] = (

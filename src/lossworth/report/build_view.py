@@ -23,7 +23,7 @@ from ..records.quantity import Quantity
 from ..records.tender import Tender
 from ..trail import Figure
 from .figure_text import shown_figures
-from .formats import number
+from .formats import as_stated
 from .view import (
     CostView,
     EvaluationView,
@@ -138,7 +138,7 @@ def _lot(tender: Tender, lot: LotEvaluation, evaluation: Evaluation) -> LotView:
         description=one_line(lot.lot.description.value),
         quantity=int(lot.quantity.value),
         quantity_figure=lot.quantity.id,
-        rated_power=f"{number(power.stated)} {power.unit}",
+        rated_power=f"{as_stated(power.stated)} {power.unit}",
         limits=limits(lot.lot),
         rates=_rates(tender, lot),
         offers=tuple(_offer(offer, lot, evaluation) for offer in lot.offers),

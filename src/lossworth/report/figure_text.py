@@ -7,7 +7,7 @@ from decimal import Decimal
 
 from ..findings import Place, one_line
 from ..trail import Constant, Derivation, Figure, Operation, Operator, Rule, walk
-from .formats import amount, number
+from .formats import amount, as_stated, number
 from .view import ShownFigure
 
 __all__ = ["shown_figures", "value_text"]
@@ -60,7 +60,7 @@ def value_text(figure: Figure, currency: str) -> str:
         return amount(value, min(places, 6))
     if len(value.as_tuple().digits) > _LONG:
         value = +value.quantize(Decimal(1).scaleb(max(value.adjusted() - _LONG + 1, -_LONG)))
-    return number(value)
+    return as_stated(value) if isinstance(figure.source, Place) else number(value)
 
 
 def _with_unit(figure: Figure, currency: str) -> str:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from decimal import ROUND_HALF_UP, Context, Decimal
 
-__all__ = ["MINUS", "THIN_SPACE", "amount", "number", "percent", "plain", "significant"]
+__all__ = ["MINUS", "THIN_SPACE", "amount", "as_stated", "number", "percent", "plain", "significant"]
 
 #: Between groups of three digits; does not break.
 THIN_SPACE = "\u202f"
@@ -47,6 +47,22 @@ def number(value: Decimal) -> str:
         ``"0.058"``, ``"31,500"``.
     """
     value = value.normalize(_PRINTING)
+    return f"{value:,f}".replace("-", MINUS)
+
+
+def as_stated(value: Decimal) -> str:
+    """Number with grouped thousands and the digits with which it was stated, trailing zeros included.
+
+    Parameters
+    ----------
+    value : Decimal
+        Any number.
+
+    Returns
+    -------
+    str
+        ``"0.130"``, ``"1.2500"``.
+    """
     return f"{value:,f}".replace("-", MINUS)
 
 

@@ -6,7 +6,7 @@ from ..evaluation.result import LotEvaluation
 from ..findings import one_line
 from ..records.quantity import Entry
 from ..records.tender import Derivation, Lot, Tender
-from .formats import amount, number, percent
+from .formats import amount, as_stated, percent
 
 __all__ = [
     "CAUTIONS",
@@ -87,22 +87,24 @@ def limits(stated: Lot) -> tuple[str, ...]:
     phrases = []
     if stated.maximum_no_load_loss_kw:
         phrases.append(
-            f"no-load loss at most {number(stated.maximum_no_load_loss_kw.stated)} "
+            f"no-load loss at most {as_stated(stated.maximum_no_load_loss_kw.stated)} "
             f"{stated.maximum_no_load_loss_kw.unit}"
         )
     if stated.maximum_load_loss_kw:
         phrases.append(
-            f"load loss at most {number(stated.maximum_load_loss_kw.stated)} {stated.maximum_load_loss_kw.unit}"
+            f"load loss at most {as_stated(stated.maximum_load_loss_kw.stated)} {stated.maximum_load_loss_kw.unit}"
         )
     if stated.minimum_peak_efficiency_index_percent:
-        phrases.append(f"peak efficiency index at least {number(stated.minimum_peak_efficiency_index_percent.value)} %")
+        phrases.append(
+            f"peak efficiency index at least {as_stated(stated.minimum_peak_efficiency_index_percent.value)} %"
+        )
     if stated.impedance_percent and stated.impedance_tolerance_percentage_points:
         phrases.append(
-            f"impedance {number(stated.impedance_percent.value)} % within "
-            f"{number(stated.impedance_tolerance_percentage_points.value)} percentage points"
+            f"impedance {as_stated(stated.impedance_percent.value)} % within "
+            f"{as_stated(stated.impedance_tolerance_percentage_points.value)} percentage points"
         )
     if stated.latest_delivery_weeks:
-        phrases.append(f"delivery within {number(stated.latest_delivery_weeks.value)} weeks")
+        phrases.append(f"delivery within {as_stated(stated.latest_delivery_weeks.value)} weeks")
     return tuple(phrases)
 
 
