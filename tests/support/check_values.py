@@ -26,7 +26,7 @@ class Printed:
 
     def agrees(self, computed: float) -> bool:
         """Whether a computed value prints as these digits: within half a unit, or within one where truncated."""
-        excess = Decimal(computed) - Decimal(self.digits)
+        excess = Decimal(repr(float(computed))) - Decimal(self.digits)
         return 0 <= excess < self.unit if self.truncated else abs(excess) <= self.unit / 2
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import sys
 from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 from pathlib import Path
@@ -95,7 +96,15 @@ def read_everything(place: Path, bids: tuple[Path, ...]) -> Reading:
 def _progress(files: int) -> Iterator[Callable[[InputFile], None]]:
     """Show a bar on the error stream where there are enough files to wait for."""
     if files < _PROGRESS_FROM:
-        yield lambda _: None
+        yield _silent
         return
-    with click.progressbar(length=files, label="Reading bids", file=click.get_text_stream("stderr")) as bar:
-        yield lambda _: bar.update(1)
+    with click.progressbar(length=files, label="Reading bids", file=sys.stderr) as bar:
+
+        def advance(_: InputFile) -> None:
+            bar.update(1)
+
+        yield advance
+
+
+def _silent(_: InputFile) -> None:
+    """Fewer files than a bar is worth."""
