@@ -464,7 +464,22 @@ KINDS: dict[str, FindingKind] = {
             "The tender sets a limit, and the bidder does not state the value that it limits.",
             "The offer stays unranked; whether the bidder may be asked is for the tender's rules to say.",
         ),
+        FindingKind(
+            "loss-basis-differs",
+            "Loss guaranteed on another basis",
+            _NOT_EVALUATED,
+            "The bidder states the load loss at another rating or temperature, or as a total, and the tender does not "
+            "allow a conversion.",
+            "Ask the bidder for the guarantee on the tender's basis.",
+        ),
         # Notes
+        FindingKind(
+            "loss-converted",
+            "Loss converted to the tender's basis",
+            _NOTE,
+            "The bidder states the load loss on another basis, and the tender allows the conversion.",
+            "Have the bidder confirm the converted value; until then it is an assumption.",
+        ),
         FindingKind(
             "value-not-read",
             "Value not read",

@@ -29,6 +29,8 @@ def stacked(rates: Rates) -> np.ndarray:
     [
         ("energy_price_per_kwh", 0.01),
         ("energy_price_escalation", 0.01),
+        ("carbon_cost_per_kwh", 0.01),
+        ("carbon_cost_escalation", 0.01),
         ("demand_charge_per_kw_year", 5.0),
         ("demand_charge_escalation", 0.01),
         ("peak_load_pu", 0.1),
@@ -43,6 +45,7 @@ def test_loss_capitalization_rates__never_fall_with(name: str, step: float, inpu
     """A dearer price, a larger load or a longer period never lowers a rate."""
     defaults = {"energy_price_escalation": 0.0, "demand_charge_per_kw_year": 0.0, "demand_charge_escalation": 0.0}
     defaults |= {"peak_load_growth": 0.0, "upstream_gross_up": 1.0}
+    defaults |= {"carbon_cost_per_kwh": 0.0, "carbon_cost_escalation": 0.0}
     before = {**defaults, **inputs}
     after = {**before, name: before[name] + step}
     lower, upper = stacked(loss_capitalization_rates(**before)), stacked(loss_capitalization_rates(**after))
@@ -63,12 +66,8 @@ def test_loss_capitalization_rates__never_rise_with_the_discount_rate(inputs: di
 def test_loss_capitalization_rates__another_currency_unit_scales_them(inputs: dict[str, Any], power: int) -> None:
     """Prices in another unit of money scale all rates alike; by a power of two exactly."""
     unit = 2.0**power
-    charge = inputs.get("demand_charge_per_kw_year", 0.0)
-    scaled = {
-        **inputs,
-        "energy_price_per_kwh": inputs["energy_price_per_kwh"] * unit,
-        "demand_charge_per_kw_year": charge * unit,
-    }
+    money = ("energy_price_per_kwh", "carbon_cost_per_kwh", "demand_charge_per_kw_year")
+    scaled = {**inputs, **{name: inputs.get(name, 0.0) * unit for name in money}}
     expected = stacked(loss_capitalization_rates(**inputs)) * unit
     assert expected.tolist() == stacked(loss_capitalization_rates(**scaled)).tolist()
 
@@ -90,6 +89,8 @@ def test_loss_capitalization_rates__scenarios_are_independent(scenarios: list[di
     """Many scenarios at once, periods of different length included, give what each gives alone."""
     defaults: dict[str, Any] = {"discount_rate": 0, "demand_charge_per_kw_year": 0.0, "peak_load_cap_pu": np.inf}
     defaults |= {"energy_price_escalation": 0.0, "demand_charge_escalation": 0.0, "peak_load_growth": 0.0}
+    defaults |= {"carbon_cost_per_kwh": 0.0, "carbon_cost_escalation": 0.0}
+    defaults |= {"price_delay_years": 0, "discount_delay_years": 0}
     names = ("evaluation_period_years", "energy_price_per_kwh", "loss_factor", "peak_load_pu", *defaults)
     full = [{**defaults, **scenario} for scenario in scenarios]
     together = loss_capitalization_rates(**{name: [scenario[name] for scenario in full] for name in names})

@@ -50,10 +50,13 @@ def test_loss_capitalization_rates__exact_fractions(inputs: dict[str, Any]) -> N
 
 
 @brief
-@given(models, st.floats(0, 1))
-def test_loss_capitalization_rates__fifty_digits_any_timing(inputs: dict[str, Any], phi: float) -> None:
-    """With any timing the recursion equals the plain sum in 50 digits."""
+@given(models, st.floats(0, 1), st.floats(0, 10), st.floats(0, 10))
+def test_loss_capitalization_rates__fifty_digits_any_timing(
+    inputs: dict[str, Any], phi: float, price_delay: float, discount_delay: float
+) -> None:
+    """With any timing and any dates the recursion equals the plain sum in 50 digits."""
     inputs = {**inputs, "years_before_end": phi}
+    inputs |= {"price_delay_years": price_delay, "discount_delay_years": discount_delay}
     computed = loss_capitalization_rates(**inputs)
     expected = reference_rates(digits50, **inputs)
     for rate, value in zip((computed.no_load, computed.load, computed.auxiliary), expected, strict=True):
@@ -175,6 +178,46 @@ def test_closed_forms__equal_the_engine_without_growth(
 
 
 @thorough
+@given(escalations, years, st.one_of(rates, distances.map(lambda d: ("near", d))), prices, st.integers(0, 10))
+def test_carbon_cost__has_a_closed_form_of_its_own(e: float, n: int, rate: Any, cost: float, delay: int) -> None:
+    """The carbon part is 8760 k times its own growing annuity, at its escalation e = r and near it too."""
+    r = e + rate[1] if isinstance(rate, tuple) else rate
+    computed = loss_capitalization_rates(
+        discount_rate=r,
+        evaluation_period_years=n,
+        energy_price_per_kwh=0,
+        energy_price_escalation=0.05,
+        carbon_cost_per_kwh=cost,
+        carbon_cost_escalation=e,
+        price_delay_years=delay,
+        loss_factor=0.25,
+        peak_load_pu=0.5,
+    )
+    growth = (1 + exact(e)) ** delay * geometric(exact(r), n, exact(e))
+    assert relative_error(computed.no_load, 8760 * exact(cost) * growth) < CLOSE
+    assert relative_error(computed.load, 8760 * exact(cost) * growth / 16) < CLOSE
+
+
+@thorough
+@given(models, st.floats(0, 10), st.floats(0, 10))
+def test_delays__are_factors_before_the_sum(inputs: dict[str, Any], price_delay: float, discount_delay: float) -> None:
+    """Escalating before year 1 is the same as stating the escalated amounts, and discounting on is one factor."""
+    plain = {**inputs, "price_delay_years": 0, "discount_delay_years": 0}
+    delayed = {**inputs, "price_delay_years": price_delay, "discount_delay_years": discount_delay}
+    amounts = {
+        "energy_price_per_kwh": "energy_price_escalation",
+        "carbon_cost_per_kwh": "carbon_cost_escalation",
+        "demand_charge_per_kw_year": "demand_charge_escalation",
+    }
+    for name, escalation in amounts.items():
+        plain[name] = inputs.get(name, 0.0) * (1 + inputs.get(escalation, 0.0)) ** price_delay
+    factor = (1 + inputs["discount_rate"]) ** -discount_delay
+    computed, expected = loss_capitalization_rates(**delayed), loss_capitalization_rates(**plain)
+    for name in ("no_load", "load", "auxiliary"):
+        np.testing.assert_allclose(getattr(computed, name), factor * getattr(expected, name), rtol=CLOSE, atol=0)
+
+
+@thorough
 @given(rates, escalations, growths, years, prices, loads)
 def test_growing_load_factor__equals_the_engine(
     r: float, e: float, g: float, n: int, price: float, beta: float
@@ -205,12 +248,13 @@ def test_levelizing_factor__constant_cost_of_equal_present_value(d: float, e: fl
 
 
 @thorough
-@given(st.floats(-0.05, 0.3), st.floats(-0.05, 0.3), years, prices, charges, loads, shares)
+@given(st.floats(-0.05, 0.3), st.floats(-0.05, 0.3), years, prices, charges, loads, shares, st.floats(0, 5))
 def test_real_and_nominal__equal_rates(
-    real: float, inflation: float, n: int, price: float, charge: float, beta: float, loss_factor: float
+    real: float, inflation: float, n: int, price: float, charge: float, beta: float, loss_factor: float, delay: float
 ) -> None:
-    """Real rate with constant prices equals nominal rate with prices that rise by the inflation from year 1 on."""
+    """Real rate with constant prices equals nominal rate with prices that rise by the inflation from the price date."""
     common = {"evaluation_period_years": n, "loss_factor": loss_factor, "peak_load_pu": beta}
+    common |= {"price_delay_years": delay, "discount_delay_years": delay}
     constant = loss_capitalization_rates(
         discount_rate=real, energy_price_per_kwh=price, demand_charge_per_kw_year=charge, **common
     )
@@ -288,7 +332,9 @@ def test_equivalent_peak_load__gives_the_energy_part_of_the_load_rate(inputs: di
     inputs = {**inputs, "demand_charge_per_kw_year": 0.0}
     table = year_table(**inputs)
     equivalent = load.equivalent_peak_load(
-        table.peak_load_pu, discount_factor=table.discount_factor, energy_price_per_kwh=table.energy_price_per_kwh
+        table.peak_load_pu,
+        discount_factor=table.discount_factor,
+        energy_price_per_kwh=table.energy_price_per_kwh + table.carbon_cost_per_kwh,
     )
     constant = {**inputs, "peak_load_pu": equivalent, "peak_load_growth": 0.0, "peak_load_cap_pu": np.inf}
     np.testing.assert_allclose(

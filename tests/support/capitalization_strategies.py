@@ -33,7 +33,7 @@ charges = st.one_of(st.just(0.0), st.floats(0.1, 500))
 loads = st.floats(0.05, 1.5)
 caps = st.one_of(st.just(math.inf), st.floats(0.05, 1.5))
 
-#: Everything of the year-by-year model; timing at the ends of the year keeps fractions exact.
+#: Everything of the year-by-year model; timing at the ends of the year and whole delays keep fractions exact.
 models = st.fixed_dictionaries(
     {
         "discount_rate": rates,
@@ -46,6 +46,8 @@ models = st.fixed_dictionaries(
         "years_before_end": st.sampled_from([0.0, 1.0]),
         "energy_price_escalation": escalations,
         "escalate_before_year_1": st.booleans(),
+        "carbon_cost_per_kwh": st.one_of(st.just(0.0), prices),
+        "carbon_cost_escalation": escalations,
         "demand_charge_per_kw_year": charges,
         "demand_charge_escalation": escalations,
         "peak_load_growth": growths,
@@ -56,6 +58,8 @@ models = st.fixed_dictionaries(
         "cooling_hours": st.floats(1, 8784),
         "cooling_share_at_peak": shares,
         "upstream_gross_up": st.floats(1, 1.2),
+        "price_delay_years": st.integers(0, 4),
+        "discount_delay_years": st.integers(0, 4),
     },
 )
 

@@ -2,21 +2,25 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from decimal import Decimal
 from typing import Any
 
 from lossworth.findings import Place
 from lossworth.money import Rounding, RoundingMode
 from lossworth.records.bid import Offer
+from lossworth.records.profile import PriceBlock, PriceSeries, Profile, TimeGrid
 from lossworth.records.quantity import Entry, Quantity
 from lossworth.records.tender import (
     AnnouncedRates,
     BidFileRules,
+    CoolingStage,
     Derivation,
     Economics,
     Exchange,
     Identity,
     LoadingCondition,
+    LossBasis,
     Lot,
     RoundingPoint,
     Rules,
@@ -155,3 +159,66 @@ def priced(bidder: str, price: str, no_load: str, load: str, lot: str = "1", **c
         load_loss_kw=quantity(load, "kW"),
         **changes,
     )
+
+
+def grid(steps: int = 8760, **changes: Any) -> TimeGrid:
+    """A year of equal steps, with months, day types and hours of a year that begins on a Monday."""
+    hours = [8760 / steps] * steps
+    starts = [(step * 8760 / steps) % 24 for step in range(steps)]
+    days = [int(step * 8760 / steps // 24) for step in range(steps)]
+    types = ["sunday" if day % 7 == 6 else "saturday" if day % 7 == 5 else "workday" for day in days]
+    fields: dict[str, Any] = {
+        "kind": "year",
+        "step_hours": 8760 / steps,
+        "hours": tuple(hours),
+        "day_types": tuple(types),
+        "months": tuple(min(12, day // 31 + 1) for day in days),
+        "starts": tuple(starts),
+    }
+    return TimeGrid(**(fields | changes))
+
+
+def profile(loads: Sequence[float], unit: str = "pu", **changes: Any) -> Profile:
+    """A load profile over a year."""
+    fields: dict[str, Any] = {
+        "file": "profiles/feeder.csv",
+        "unit": unit,
+        "loads": tuple(float(load) for load in loads),
+        "grid": grid(len(loads)),
+        "sha256": "0" * 64,
+        "place": place(),
+    }
+    return Profile(**(fields | changes))
+
+
+def series(prices: Sequence[float], **changes: Any) -> PriceSeries:
+    """An energy price over a year."""
+    fields: dict[str, Any] = {
+        "file": "profiles/prices.csv",
+        "prices_per_kwh": tuple(float(price) for price in prices),
+        "grid": grid(len(prices)),
+        "sha256": "0" * 64,
+        "place": place(),
+    }
+    return PriceSeries(**(fields | changes))
+
+
+def block(name: str, price: str, **conditions: Any) -> PriceBlock:
+    """A block of a tariff."""
+    return PriceBlock(name=entry(name), price_per_kwh=quantity(price), place=place(), **conditions)
+
+
+def stage(above: str, share: str = "1") -> CoolingStage:
+    """A cooling stage."""
+    return CoolingStage(above_load_pu=quantity(above), share_of_auxiliary_loss=quantity(share), place=place())
+
+
+def loss_basis(**changes: Any) -> LossBasis:
+    """A basis that wants 75 °C, copper, and allows every conversion."""
+    fields: dict[str, Any] = {
+        "reference_temperature_c": quantity("75", "°C"),
+        "conductor": "copper",
+        "convert": ("rating", "temperature", "total loss"),
+        "place": place(),
+    }
+    return LossBasis(**(fields | changes))

@@ -49,16 +49,20 @@ def _plain_sum(number: Callable[[Any], Any], inputs: dict[str, Any]) -> tuple[An
     def given(name: str, default: float) -> Any:
         return number(inputs.get(name, default))
 
-    r, phi = given("discount_rate", 0), inputs.get("years_before_end", 0.0)
+    def years(*parts: Any) -> Any:
+        # whole exponents keep fractions exact
+        return sum(map(int, parts)) if all(part == int(part) for part in parts) else sum(map(number, parts))
+
+    r, phi, later = given("discount_rate", 0), inputs.get("years_before_end", 0.0), inputs.get("price_delay_years", 0)
     responsibility, capped = given("peak_responsibility_factor", 1), inputs.get("peak_load_cap_pu", np.inf) < np.inf
     a = b = c = number(0)
     for t in range(1, inputs["evaluation_period_years"] + 1):
-        # whole exponents keep fractions exact
-        exponent = t - int(phi) if phi == int(phi) else number(t) - number(phi)
-        factor = 1 / (1 + r) ** exponent
-        escalations = t - 1 + int(inputs.get("escalate_before_year_1", False))
+        factor = 1 / (1 + r) ** years(t, -phi, inputs.get("discount_delay_years", 0))
+        escalations = years(t - 1, later, inputs.get("escalate_before_year_1", False))
         price = given("energy_price_per_kwh", 0) * (1 + given("energy_price_escalation", 0)) ** escalations
-        charge = given("demand_charge_per_kw_year", 0) * (1 + given("demand_charge_escalation", 0)) ** (t - 1)
+        escalations = years(t - 1, later)
+        price += given("carbon_cost_per_kwh", 0) * (1 + given("carbon_cost_escalation", 0)) ** escalations
+        charge = given("demand_charge_per_kw_year", 0) * (1 + given("demand_charge_escalation", 0)) ** escalations
         load = given("peak_load_pu", 0) * (1 + given("peak_load_growth", 0)) ** (t - 1)
         load = min(load, number(inputs["peak_load_cap_pu"])) if capped else load
         energy_hours = given("hours_of_load", 8760) * given("loss_factor", 0)

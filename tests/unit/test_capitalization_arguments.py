@@ -143,3 +143,17 @@ def test_finite__overflow_is_refused() -> None:
     """A result beyond the range of floating point is an error with a name, not inf."""
     with pytest.raises(ValueError, match=r"^annuity factor: exceeds the range of floating-point numbers"):
         pv.annuity_factor(-0.999999, 1000)
+
+
+@pytest.mark.parametrize("layout", ["one axis", "transposed"])
+def test_checked__fault_far_behind(layout: str) -> None:
+    """Checks look at a part at a time and reach the last of many elements, in any layout of memory."""
+    values = np.zeros((400_000, 1)) if layout == "one axis" else np.zeros((4, 100_000)).T
+    arguments.checked("discount_rate", values, RATE)
+    assert arguments.finite(values, "rate") is values
+    values[-1, -1] = -np.inf
+    index = ", ".join(str(length - 1) for length in values.shape)
+    with pytest.raises(ValueError, match=rf"^discount_rate: must be above -1, got -inf at index {index}$"):
+        arguments.checked("discount_rate", values, RATE)
+    with pytest.raises(ValueError, match=r"^rate: exceeds the range"):
+        arguments.finite(values, "rate")

@@ -1,1 +1,1 @@
-"""The only place that reads users' files: tender file, bidders' workbooks and tables."""
+"""The only place that reads users' files: tender file and bids in, records and findings out."""
