@@ -7,17 +7,24 @@ import subprocess
 from pathlib import Path
 
 SCRIPT = Path(__file__).resolve().parents[2] / ".ci" / "system_packages"
-NEEDED = "chromium libreoffice-calc-nogui poppler-utils"
+PROGRAMS = ("chromium", "soffice", "pdftoppm")
+NEEDED = "chromium libreoffice-calc-nogui poppler-utils libatomic1 fonts-liberation"
 
 
-def machine(folder: Path, *, user: int, apt_get: str = "exit 0", present: tuple[str, ...] = ()) -> Path:
-    """A folder of programs that stands for a machine: the shell's own, a user id, apt-get, and what is present."""
+def machine(folder: Path, *, user: int, apt_get: str = "exit 0", furnished: bool = False) -> Path:
+    """A folder of programs that stands for a machine, bare or furnished with all that tests need except Calc."""
     for name in ("bash", "dirname", "readlink", "mktemp", "rm", "tail"):
         found = shutil.which(name)
         assert found is not None
         (folder / name).symlink_to(found)
-    fakes = {"id": f"echo {user}", "apt-get": f'echo "$@" >> {folder}/asked\n{apt_get}'}
-    for name, body in {**fakes, **dict.fromkeys(present, "exit 0")}.items():
+    fakes = {
+        "id": f"echo {user}",
+        "apt-get": f'echo "$@" >> {folder}/asked\n{apt_get}',
+        "ldconfig": "echo libatomic.so.1" if furnished else "exit 0",
+        "fc-match": "echo LiberationSans-Regular.ttf" if furnished else "echo DejaVuSans.ttf",
+        **(dict.fromkeys(PROGRAMS, "exit 0") if furnished else {}),
+    }
+    for name, body in fakes.items():
         (folder / name).write_text(f"#!{folder}/bash\n{body}\n", encoding="utf-8")
         (folder / name).chmod(0o755)
     return folder
@@ -47,14 +54,14 @@ def test_system_packages__installed_by_root(tmp_path: Path) -> None:
 
 def test_system_packages__only_what_is_missing(tmp_path: Path) -> None:
     """A spreadsheet without Calc counts as missing; a browser that is there is left alone."""
-    run(machine(tmp_path, user=0, present=("chromium", "soffice", "pdftoppm")))
+    run(machine(tmp_path, user=0, furnished=True))
     assert (tmp_path / "asked").read_text(encoding="utf-8").splitlines()[-1].endswith(" libreoffice-calc-nogui")
 
 
 def test_system_packages__nothing_to_do(tmp_path: Path) -> None:
     """Where everything is there, apt is not asked."""
     (tmp_path / "libsclo.so").touch()
-    done = run(machine(tmp_path, user=0, present=("chromium", "soffice", "pdftoppm")))
+    done = run(machine(tmp_path, user=0, furnished=True))
     assert done.returncode == 0
     assert not (tmp_path / "asked").exists()
 
