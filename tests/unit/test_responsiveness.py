@@ -6,6 +6,7 @@ from decimal import Decimal as D
 
 import pytest
 
+from lossworth.evaluation.loss_basis import on_basis
 from lossworth.evaluation.responsiveness import check_offer, peak_efficiency_index_percent
 from support import records as make
 
@@ -24,9 +25,14 @@ AT_THE_LIMIT = {
 }
 
 
+def check(offer, lot):
+    """Findings on the limits of an offer as read."""
+    return check_offer(on_basis(offer, lot), lot)
+
+
 def kinds(**changes) -> list[str]:
     """Kinds of the findings on an offer at all limits, with changes."""
-    return [f.kind for f in check_offer(make.offer(**(AT_THE_LIMIT | changes)), make.lot(**LIMITS))]
+    return [f.kind for f in check(make.offer(**(AT_THE_LIMIT | changes)), make.lot(**LIMITS))]
 
 
 def test_check_offer__at_the_limits():
@@ -46,7 +52,7 @@ def test_check_offer__at_the_limits():
 )
 def test_check_offer__one_digit_beyond(field, value, kind):
     """One unit of the last digit beyond a limit fails."""
-    assert kinds(**{field: make.quantity(value)}) == [kind]
+    assert kinds(**{field: make.quantity(value, AT_THE_LIMIT[field].unit)}) == [kind]
 
 
 @pytest.mark.parametrize("field", ["impedance_percent", "delivery_weeks"])
@@ -57,12 +63,12 @@ def test_check_offer__limit_not_answered(field):
 
 def test_check_offer__no_limits():
     """Without limits nothing is asked."""
-    assert check_offer(make.offer(), make.lot()) == ()
+    assert check(make.offer(), make.lot()) == ()
 
 
 def test_check_offer__several_faults_at_once():
     """All faults come at once."""
-    assert kinds(no_load_loss_kw=make.quantity("1"), load_loss_kw=make.quantity("9")) == [
+    assert kinds(no_load_loss_kw=make.quantity("1", "kW"), load_loss_kw=make.quantity("9", "kW")) == [
         "no-load-loss-above-maximum",
         "load-loss-above-maximum",
     ]
@@ -87,7 +93,7 @@ def test_check_peak_efficiency_index__exact_at_the_limit():
     lot = make.lot(
         minimum_peak_efficiency_index_percent=make.quantity("99"), rated_power_kva=make.quantity("200", "kVA")
     )
-    at_limit = make.offer(no_load_loss_kw=make.quantity("0.5"), load_loss_kw=make.quantity("2"))
-    beyond = make.offer(no_load_loss_kw=make.quantity("0.5"), load_loss_kw=make.quantity("2.000001"))
-    assert check_offer(at_limit, lot) == ()
-    assert [f.kind for f in check_offer(beyond, lot)] == ["efficiency-below-minimum"]
+    at_limit = make.offer(no_load_loss_kw=make.quantity("0.5", "kW"), load_loss_kw=make.quantity("2", "kW"))
+    beyond = make.offer(no_load_loss_kw=make.quantity("0.5", "kW"), load_loss_kw=make.quantity("2.000001", "kW"))
+    assert check(at_limit, lot) == ()
+    assert [f.kind for f in check(beyond, lot)] == ["efficiency-below-minimum"]

@@ -6,23 +6,27 @@ from collections.abc import Collection, Iterable
 
 from ..findings import Effect, Finding
 from ..records.bid import Offer, is_naturally_cooled
-from ..records.tender import Lot, Tender
+from ..records.tender import CoolingValuation, Lot, Tender
+from .loss_basis import OfferOnBasis
 from .result import LotRates
 
 __all__ = ["check_completeness"]
 
-_NEEDED = (("unit_price", "unit price"), ("no_load_loss_kw", "no-load loss"), ("load_loss_kw", "load loss"))
+_COOLING_POWERS = (
+    ("cooling_power_no_load_kw", "cooling power at no load"),
+    ("cooling_power_rated_kw", "cooling power at rated load"),
+)
 
 
 def check_completeness(
-    offer: Offer, lot: Lot, rates: LotRates, tender: Tender, known: Collection[Finding]
+    judged: OfferOnBasis, lot: Lot, rates: LotRates, tender: Tender, known: Collection[Finding]
 ) -> tuple[Finding, ...]:
     """Findings on what an offer does not state.
 
     Parameters
     ----------
-    offer : Offer
-        One offer, as read.
+    judged : OfferOnBasis
+        One offer with its losses on the tender's basis.
     lot : Lot
         Its lot, for the cooling.
     rates : LotRates
@@ -38,13 +42,20 @@ def check_completeness(
         Missing values, an unknown currency, and what is said of the auxiliary loss.
     """
     reported = {finding.field for finding in known if finding.effect is not Effect.NOTE}
-    found = (*_missing(offer), *_currency(offer, tender), *_auxiliary(offer, lot, rates))
+    offer = judged.offer
+    found = (*_missing(judged), *_currency(offer, tender), *_auxiliary(offer, lot, rates), *_cooling(offer, lot))
     return tuple(finding for finding in found if finding.field not in reported)
 
 
-def _missing(offer: Offer) -> Iterable[Finding]:
-    for name, label in _NEEDED:
-        if getattr(offer, name) is None:
+def _missing(judged: OfferOnBasis) -> Iterable[Finding]:
+    offer = judged.offer
+    needed = (
+        ("unit_price", "unit price", offer.unit_price),
+        ("no_load_loss_kw", "no-load loss", judged.no_load_loss),
+        ("load_loss_kw", "load loss", judged.load_loss),
+    )
+    for name, label, value in needed:
+        if value is None:
             place = offer.columns.get(name, offer.place)
             yield Finding("value-missing", label, "must be stated", place, "", offer.bidder.value, offer.lot.value)
 
@@ -81,3 +92,15 @@ def _auxiliary(offer: Offer, lot: Lot, rates: LotRates) -> Iterable[Finding]:
     else:
         rule = f"must be stated for a unit cooled {cooling}"
         yield Finding("value-missing", "auxiliary loss", rule, place, "", *who)
+
+
+def _cooling(offer: Offer, lot: Lot) -> Iterable[Finding]:
+    """Cooling powers, where cooling is valued through A and B."""
+    if lot.cooling_valuation is not CoolingValuation.THROUGH_A_AND_B:
+        return
+    cooling = (offer.cooling or lot.cooling).value
+    for name, label in _COOLING_POWERS:
+        if getattr(offer, name) is None and not is_naturally_cooled(cooling):
+            place = offer.columns.get(name, offer.place)
+            rule = f"must be stated for a unit cooled {cooling}"
+            yield Finding("value-missing", label, rule, place, "", offer.bidder.value, offer.lot.value)

@@ -11,6 +11,9 @@ from ..records.tender import Lot, Tender
 from ..trail import Figure, read
 from .completeness import check_completeness
 from .identities import figure_id
+from .information import information
+from .load_and_price import check_load_and_price
+from .loss_basis import on_basis
 from .lot_rates import lot_rates
 from .owning_cost import CostBasis, owning_cost
 from .pricing import exchange_rates
@@ -48,7 +51,7 @@ def evaluate(tender: Tender, offers: Iterable[Offer], findings: Iterable[Finding
     .. [1] REA Bulletin 65-2 (1978) / RUS Bulletin 1724E-301 (1997): rates times guaranteed losses are added to the
        bid price for evaluation.
     """
-    known = tuple(findings)
+    known = (*findings, *check_load_and_price(tender))
     if any_stops(known):
         raise EvaluationStopped(known)
     rates = exchange_rates(tender)
@@ -73,10 +76,19 @@ def _evaluate_lot(
 
 def _evaluate_offer(tender: Tender, offer: Offer, basis: CostBasis, known: tuple[Finding, ...]) -> EvaluatedOffer:
     before = tuple(f for f in known if f.bidder == offer.bidder.value and f.lot == offer.lot.value)
-    complete = check_completeness(offer, basis.lot, basis.rates, tender, before)
-    findings = (*before, *complete, *check_offer(offer, basis.lot))
-    per_unit, lot = owning_cost(offer, basis)
-    return EvaluatedOffer(offer, _status(findings), per_unit, lot, findings)
+    judged = on_basis(offer, basis.lot)
+    found = (*before, *judged.findings)
+    complete = check_completeness(judged, basis.lot, basis.rates, tender, found)
+    findings = (*found, *complete, *_new(check_offer(judged, basis.lot), found))
+    per_unit, lot = owning_cost(judged, basis)
+    facts = information(tender, basis.lot, basis.rates, judged)
+    return EvaluatedOffer(judged, _status(findings), per_unit, lot, findings, facts)
+
+
+def _new(limits: Iterable[Finding], before: tuple[Finding, ...]) -> tuple[Finding, ...]:
+    """Findings on limits, less those on a value of which it is known already that it cannot be read."""
+    unread = {finding.field for finding in before if finding.effect is Effect.NOT_EVALUATED}
+    return tuple(f for f in limits if f.kind != "limit-not-answered" or f.field not in unread)
 
 
 def _status(findings: Iterable[Finding]) -> Status:

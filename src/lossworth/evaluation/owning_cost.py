@@ -8,15 +8,14 @@ from decimal import Decimal
 
 from ..money import Rounding
 from ..records.bid import Offer, is_naturally_cooled
-from ..records.quantity import Quantity
-from ..records.tender import Lot, RoundingPoint, Rules
-from ..trail import Figure, Rule, constant, product, quotient, read, rounded, total
-from ..units import LOSS_UNITS
+from ..records.tender import CoolingValuation, Lot, RoundingPoint, Rules
+from ..trail import Figure, Rule, difference, product, rounded, total
 from .identities import figure_id
+from .loss_basis import OfferOnBasis, loss_in_kw
 from .pricing import unit_price_in_evaluation_currency
 from .result import LotRates, OwningCost
 
-__all__ = ["CostBasis", "auxiliary_loss", "loss_in_kw", "owning_cost"]
+__all__ = ["CostBasis", "auxiliary_loss", "cooling_powers", "owning_cost"]
 
 _PARTS = ("evaluated_price", "no_load_cost", "load_cost", "auxiliary_cost")
 _LABELS = {
@@ -39,42 +38,6 @@ class CostBasis:
     rules: Rules
 
 
-def loss_in_kw(offer: Offer, name: str, label: str, loss: Quantity | None) -> Figure | None:
-    """Guaranteed loss of one unit in kW, with the conversion shown where the bidder states watts.
-
-    Parameters
-    ----------
-    offer : Offer
-        The offer, for the identity.
-    name, label : str
-        Identity and name of the loss.
-    loss : Quantity or None
-        As read.
-
-    Returns
-    -------
-    Figure or None
-        None where the loss is not stated. [kW]
-    """
-    if loss is None:
-        return None
-    identity = figure_id(f"lot {offer.lot}", offer.bidder.value, name)
-    if loss.unit == "kW":
-        return read(identity, label, loss.value, "kW", loss.place)
-    stated = read(f"{identity}/as read", f"{label} as read", loss.stated, loss.unit, loss.place)
-    size = LOSS_UNITS[loss.unit]
-    if size > 1:
-        name = f"kW in 1 {loss.unit}"
-        return product(
-            identity, label, "kW", stated, constant(name, name, size, f"kW/{loss.unit}", f"1 {loss.unit} = {size} kW")
-        )
-    pieces = Decimal(f"{1 / size:f}")
-    name = f"{loss.unit} in 1 kW"
-    return quotient(
-        identity, label, "kW", stated, constant(name, name, pieces, f"{loss.unit}/kW", f"1 kW = {pieces} {loss.unit}")
-    )
-
-
 def auxiliary_loss(offer: Offer, lot: Lot) -> Figure | None:
     """Auxiliary loss of one unit: as stated, or zero by rule for a unit without fans and pumps.
 
@@ -92,21 +55,51 @@ def auxiliary_loss(offer: Offer, lot: Lot) -> Figure | None:
     """
     if offer.auxiliary_loss_kw is not None:
         return loss_in_kw(offer, "auxiliary_loss_kw", "auxiliary loss", offer.auxiliary_loss_kw)
-    cooling = offer.cooling or lot.cooling
-    if not is_naturally_cooled(cooling.value):
-        return None
-    identity = figure_id(f"lot {offer.lot}", offer.bidder.value, "auxiliary_loss_kw")
-    rule = Rule(f"{cooling.value} needs no fans or pumps: a blank auxiliary loss is zero ({cooling.place})")
-    return Figure(identity, "auxiliary loss", Decimal(0), "kW", rule)
+    return _zero_by_rule(offer, lot, "auxiliary_loss_kw", "auxiliary loss")
 
 
-def owning_cost(offer: Offer, basis: CostBasis) -> tuple[OwningCost, OwningCost]:
-    """Total owning cost of one unit and of the lot.
+def cooling_powers(offer: Offer, lot: Lot) -> tuple[Figure | None, Figure | None]:
+    """Cooling power at no load and at rated load, for the valuation through A and B.
 
     Parameters
     ----------
     offer : Offer
-        One offer.
+        The offer.
+    lot : Lot
+        The lot, for its cooling designation.
+
+    Returns
+    -------
+    at_no_load, at_rated_load : Figure or None
+        Pc0 and Pcs; None where a unit with fans or pumps does not state them. [kW]
+    """
+    names = (
+        ("cooling_power_no_load_kw", "cooling power at no load"),
+        ("cooling_power_rated_kw", "cooling power at rated load"),
+    )
+    at_no_load, at_rated = (
+        loss_in_kw(offer, name, label, getattr(offer, name)) or _zero_by_rule(offer, lot, name, label)
+        for name, label in names
+    )
+    return at_no_load, at_rated
+
+
+def _zero_by_rule(offer: Offer, lot: Lot, name: str, label: str) -> Figure | None:
+    cooling = offer.cooling or lot.cooling
+    if not is_naturally_cooled(cooling.value):
+        return None
+    identity = figure_id(f"lot {offer.lot}", offer.bidder.value, name)
+    rule = Rule(f"{cooling.value} needs no fans or pumps: a blank {label} is zero ({cooling.place})")
+    return Figure(identity, label, Decimal(0), "kW", rule)
+
+
+def owning_cost(on_basis: OfferOnBasis, basis: CostBasis) -> tuple[OwningCost, OwningCost]:
+    """Total owning cost of one unit and of the lot.
+
+    Parameters
+    ----------
+    on_basis : OfferOnBasis
+        One offer with its losses on the tender's basis.
     basis : CostBasis
         What all offers of the lot share.
 
@@ -118,14 +111,16 @@ def owning_cost(offer: Offer, basis: CostBasis) -> tuple[OwningCost, OwningCost]
     Notes
     -----
     TOC = evaluated price + A P0 + B Pk + C Paux. Where the tender rounds each cost part per unit, the lot is quantity
-    times unit; where it rounds each part per lot, the parts of one unit stay exact.
+    times unit; where it rounds each part per lot, the parts of one unit stay exact. Where cooling is valued through
+    A and B: A (P0 + Pc0) + B (Pk + Pcs - Pc0) after IEC TS 60076-20 (from memory), and C does not act.
 
     References
     ----------
     .. [1] REA Bulletin 65-2 (1978) / RUS Bulletin 1724E-301 (1997), the form of the evaluation; A and B as in
        IEC TS 60076-20 and IEEE C57.120 (from memory).
     """
-    factors = _factors(offer, basis)
+    offer = on_basis.offer
+    factors = _factors(on_basis, basis)
     per_unit_rule = basis.rules.rounding_applies_to is RoundingPoint.PART_PER_UNIT
     unit_rounding = basis.rules.rounding if per_unit_rule else None
     lot_rounding = None if per_unit_rule else basis.rules.rounding
@@ -143,20 +138,37 @@ def owning_cost(offer: Offer, basis: CostBasis) -> tuple[OwningCost, OwningCost]
     return OwningCost(**unit), OwningCost(**lot)
 
 
-def _factors(offer: Offer, basis: CostBasis) -> dict[str, tuple[Figure, ...] | None]:
-    rates = basis.rates
+def _factors(on_basis: OfferOnBasis, basis: CostBasis) -> dict[str, tuple[Figure, ...] | None]:
+    offer, rates = on_basis.offer, basis.rates
+    no_load, load = on_basis.no_load_loss, on_basis.load_loss
+    if basis.lot.cooling_valuation is CoolingValuation.THROUGH_A_AND_B:
+        no_load, load = _with_cooling(on_basis, basis.lot)
 
     def capitalized(rate: Figure | None, loss: Figure | None) -> tuple[Figure, ...] | None:
         return None if rate is None or loss is None else (rate, loss)
 
     return {
         "evaluated_price": unit_price_in_evaluation_currency(offer, basis.currency, basis.exchange_rates),
-        "no_load_cost": capitalized(
-            rates.no_load, loss_in_kw(offer, "no_load_loss_kw", "no-load loss", offer.no_load_loss_kw)
-        ),
-        "load_cost": capitalized(rates.load, loss_in_kw(offer, "load_loss_kw", "load loss", offer.load_loss_kw)),
+        "no_load_cost": capitalized(rates.no_load, no_load),
+        "load_cost": capitalized(rates.load, load),
         "auxiliary_cost": capitalized(rates.auxiliary, auxiliary_loss(offer, basis.lot)),
     }
+
+
+def _with_cooling(on_basis: OfferOnBasis, lot: Lot) -> tuple[Figure | None, Figure | None]:
+    """No-load and load loss with the cooling power of each stage."""
+    offer, no_load, load = on_basis.offer, on_basis.no_load_loss, on_basis.load_loss
+    at_no_load, at_rated = cooling_powers(offer, lot)
+    if no_load is None or load is None or at_no_load is None or at_rated is None:
+        return None, None
+
+    def name(part: str) -> str:
+        return figure_id(f"lot {offer.lot}", offer.bidder.value, part)
+
+    first = total(name("no-load loss with cooling"), "no-load loss with cooling, P0 + Pc0", "kW", no_load, at_no_load)
+    more = difference(name("cooling power above no load"), "cooling power Pcs - Pc0", "kW", at_rated, at_no_load)
+    second = total(name("load loss with cooling"), "load loss with cooling, Pk + Pcs - Pc0", "kW", load, more)
+    return first, second
 
 
 def _unit_part(

@@ -10,19 +10,21 @@ from ..money import ARITHMETIC
 from ..records.bid import Offer
 from ..records.quantity import Quantity
 from ..records.tender import Lot
+from ..trail import Figure
+from .loss_basis import OfferOnBasis
 
 __all__ = ["CHECKS", "check_offer", "peak_efficiency_index_percent"]
 
-Check = Callable[[Offer, Lot], Finding | None]
+Check = Callable[[OfferOnBasis, Lot], Finding | None]
 
 
-def check_offer(offer: Offer, lot: Lot) -> tuple[Finding, ...]:
+def check_offer(offer: OfferOnBasis, lot: Lot) -> tuple[Finding, ...]:
     """All findings on the limits of one offer.
 
     Parameters
     ----------
-    offer : Offer
-        One offer, as read.
+    offer : OfferOnBasis
+        One offer, its guaranteed values on the tender's basis.
     lot : Lot
         The lot with its limits.
 
@@ -67,38 +69,45 @@ def _finding(kind: str, field: str, rule: str, offer: Offer, place: Place, got: 
     return Finding(kind, field, rule, place, got, offer.bidder.value, offer.lot.value)
 
 
-def _shown(quantity: Quantity, unit: str) -> str:
-    """As the bidder wrote it, and in the unit of the limit where that reads otherwise."""
-    limited = f"{quantity.value:f} {unit}"
+def _shown(quantity: Quantity | None, value: Figure) -> str:
+    """As the bidder wrote it, and as it is compared where that reads otherwise."""
+    compared = f"{value.value.normalize():f} {value.unit}"
+    if quantity is None:
+        return compared
     stated = f"{quantity.text} {quantity.unit}"
-    return stated if stated == limited else f"{stated} = {limited}"
+    return stated if quantity.value == value.value and quantity.unit == value.unit else f"{stated} = {compared}"
 
 
-def _not_answered(field: str, column: str, rule: str, offer: Offer) -> Finding:
-    return _finding("limit-not-answered", field, rule, offer, offer.columns.get(column, offer.place), None)
+def _place(offer: Offer, quantity: Quantity | None, column: str) -> Place:
+    return offer.columns.get(column, offer.place) if quantity is None else quantity.place
 
 
-def check_no_load_loss(offer: Offer, lot: Lot) -> Finding | None:
+def _check_maximum(
+    offer: OfferOnBasis, limit: Quantity | None, loss: Figure | None, column: str, names: tuple[str, str]
+) -> Finding | None:
+    if limit is None or loss is None or loss.value <= limit.value:
+        return None
+    kind, field = names
+    stated: Quantity | None = getattr(offer.offer, column)
+    rule = f"must not exceed {limit.value} kW ({limit.place})"
+    return _finding(kind, field, rule, offer.offer, _place(offer.offer, stated, column), _shown(stated, loss))
+
+
+def check_no_load_loss(offer: OfferOnBasis, lot: Lot) -> Finding | None:
     """Guaranteed no-load loss at most the lot's maximum."""
-    limit, loss = lot.maximum_no_load_loss_kw, offer.no_load_loss_kw
-    if limit is None or loss is None or loss.value <= limit.value:
-        return None
-    rule = f"must not exceed {limit.value} kW ({limit.place})"
-    return _finding("no-load-loss-above-maximum", "no-load loss", rule, offer, loss.place, _shown(loss, "kW"))
+    names = ("no-load-loss-above-maximum", "no-load loss")
+    return _check_maximum(offer, lot.maximum_no_load_loss_kw, offer.no_load_loss, "no_load_loss_kw", names)
 
 
-def check_load_loss(offer: Offer, lot: Lot) -> Finding | None:
+def check_load_loss(offer: OfferOnBasis, lot: Lot) -> Finding | None:
     """Guaranteed load loss at most the lot's maximum."""
-    limit, loss = lot.maximum_load_loss_kw, offer.load_loss_kw
-    if limit is None or loss is None or loss.value <= limit.value:
-        return None
-    rule = f"must not exceed {limit.value} kW ({limit.place})"
-    return _finding("load-loss-above-maximum", "load loss", rule, offer, loss.place, _shown(loss, "kW"))
+    names = ("load-loss-above-maximum", "load loss")
+    return _check_maximum(offer, lot.maximum_load_loss_kw, offer.load_loss, "load_loss_kw", names)
 
 
-def check_peak_efficiency_index(offer: Offer, lot: Lot) -> Finding | None:
+def check_peak_efficiency_index(offer: OfferOnBasis, lot: Lot) -> Finding | None:
     """Peak efficiency index that follows from the guaranteed losses at least the lot's minimum."""
-    limit, no_load, load = lot.minimum_peak_efficiency_index_percent, offer.no_load_loss_kw, offer.load_loss_kw
+    limit, no_load, load = lot.minimum_peak_efficiency_index_percent, offer.no_load_loss, offer.load_loss
     if limit is None or no_load is None or load is None:
         return None
     # compared as squares, which are exact: P0 Pk <= ((1 - PEI) Sr / 2)^2
@@ -107,37 +116,42 @@ def check_peak_efficiency_index(offer: Offer, lot: Lot) -> Finding | None:
         return None
     index = peak_efficiency_index_percent(no_load.value, load.value, lot.rated_power_kva.value)
     rule = f"must be at least {limit.value} % ({limit.place})"
-    losses = f"{_shown(no_load, 'kW')} and {_shown(load, 'kW')}"
-    shown = f"{index:.4f} % from {losses}"
-    return _finding("efficiency-below-minimum", "peak efficiency index", rule, offer, load.place, shown)
+    read = offer.offer
+    losses = f"{_shown(read.no_load_loss_kw, no_load)} and {_shown(read.load_loss_kw, load)}"
+    place = _place(read, read.load_loss_kw, "load_loss_kw")
+    return _finding(
+        "efficiency-below-minimum", "peak efficiency index", rule, read, place, f"{index:.4f} % from {losses}"
+    )
 
 
-def check_impedance(offer: Offer, lot: Lot) -> Finding | None:
+def check_impedance(offer: OfferOnBasis, lot: Lot) -> Finding | None:
     """Guaranteed impedance inside the lot's range."""
     specified, tolerance = lot.impedance_percent, lot.impedance_tolerance_percentage_points
     if specified is None or tolerance is None:
         return None
     rule = f"must be {specified.value} % within {tolerance.value} percentage points ({specified.place})"
-    offered = offer.impedance_percent
-    if offered is None:
-        return _not_answered("impedance", "impedance_percent", rule, offer)
-    if abs(offered.value - specified.value) <= tolerance.value:
+    stated, compared = offer.offer.impedance_percent, offer.impedance
+    place = _place(offer.offer, stated, "impedance_percent")
+    if compared is None:
+        return _finding("limit-not-answered", "impedance", rule, offer.offer, place, None)
+    if abs(compared.value - specified.value) <= tolerance.value:
         return None
-    return _finding("impedance-outside", "impedance", rule, offer, offered.place, _shown(offered, "%"))
+    return _finding("impedance-outside", "impedance", rule, offer.offer, place, _shown(stated, compared))
 
 
-def check_delivery(offer: Offer, lot: Lot) -> Finding | None:
+def check_delivery(offer: OfferOnBasis, lot: Lot) -> Finding | None:
     """Delivery at the latest when the lot says."""
     latest = lot.latest_delivery_weeks
     if latest is None:
         return None
     rule = f"must not exceed {latest.value} weeks ({latest.place})"
-    offered = offer.delivery_weeks
-    if offered is None:
-        return _not_answered("delivery", "delivery_weeks", rule, offer)
-    if offered.value <= latest.value:
+    stated = offer.offer.delivery_weeks
+    place = _place(offer.offer, stated, "delivery_weeks")
+    if stated is None:
+        return _finding("limit-not-answered", "delivery", rule, offer.offer, place, None)
+    if stated.value <= latest.value:
         return None
-    return _finding("delivery-too-late", "delivery", rule, offer, offered.place, _shown(offered, "weeks"))
+    return _finding("delivery-too-late", "delivery", rule, offer.offer, place, f"{stated.text} {stated.unit}")
 
 
 CHECKS: tuple[Check, ...] = (

@@ -3,23 +3,32 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from decimal import Decimal
 from enum import StrEnum
 
+import numpy as np
+from numpy.typing import NDArray
+
 from ..findings import Finding
 from ..records.bid import Offer
+from ..records.profile import Profile
 from ..records.tender import Lot, Tender
 from ..trail import Figure
+from .loss_basis import OfferOnBasis
 
 __all__ = [
     "Basis",
+    "CoolingByYear",
     "EvaluatedOffer",
     "Evaluation",
+    "Information",
+    "LoadFacts",
     "LotEvaluation",
     "LotRates",
     "Margin",
     "OwningCost",
+    "StageHours",
     "Status",
     "YearTable",
 ]
@@ -59,6 +68,49 @@ class YearTable:
     inputs: Mapping[str, Figure]
 
 
+@dataclass(frozen=True, slots=True, eq=False)
+class CoolingByYear:
+    """Cooling that follows the load: hours by price and by time, and share on at system peak, in each year."""
+
+    hours_by_price: NDArray[np.float64]
+    hours_by_time: NDArray[np.float64]
+    share_at_peak: NDArray[np.float64]
+
+
+@dataclass(frozen=True, slots=True)
+class StageHours:
+    """A cooling stage that follows the load: its threshold, its share of the loss, its hours in each year by time."""
+
+    above_load_pu: float
+    share: float
+    hours_by_year: tuple[float, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class LoadFacts:
+    """What a load profile gives.
+
+    Parameters
+    ----------
+    profile : Profile
+        As read.
+    figures : mapping of str to Figure
+        ``load_factor``, ``loss_factor_by_time``, ``loss_factor`` (the one that is used, by price where it moves).
+    duration : tuple of (float, float)
+        Points of the duration curve: hours a year at or above the load, load over peak load. [hour/year, 1]
+    peak_load_by_year_pu : tuple of float
+        Peak load of each year. [per unit of the rating]
+    stages : tuple of StageHours
+        Cooling stages that follow the load.
+    """
+
+    profile: Profile
+    figures: Mapping[str, Figure]
+    duration: tuple[tuple[float, float], ...]
+    peak_load_by_year_pu: tuple[float, ...]
+    stages: tuple[StageHours, ...]
+
+
 @dataclass(frozen=True, slots=True)
 class LotRates:
     """Loss capitalization rates of a lot, per kW.
@@ -72,14 +124,26 @@ class LotRates:
     auxiliary : Figure or None
         C; None where the tender values no auxiliary loss. [currency/kW]
     table : YearTable or None
-        Where the rates are derived.
+        Where the rates are derived as present worth.
+    method : str
+        ``"announced rates"``, ``"present worth"`` or ``"fixed charge rate"``.
+    inputs : mapping of str to Figure
+        What derived rates were made from, by name; empty for announced ones.
+    load_facts : LoadFacts or None
+        Where the load comes from a profile.
+    cooling : CoolingByYear or None
+        Where cooling follows the load; left out of comparisons.
     """
 
     basis: Basis
     no_load: Figure
     load: Figure
     auxiliary: Figure | None
-    table: YearTable | None
+    table: YearTable | None = None
+    method: str = "announced rates"
+    inputs: Mapping[str, Figure] = field(default_factory=dict)
+    load_facts: LoadFacts | None = None
+    cooling: CoolingByYear | None = field(default=None, compare=False)
 
 
 @dataclass(frozen=True, slots=True)
@@ -91,6 +155,15 @@ class OwningCost:
     load_cost: Figure | None
     auxiliary_cost: Figure | None
     total_owning_cost: Figure | None
+
+
+@dataclass(frozen=True, slots=True)
+class Information:
+    """One fact beside the money: what it is, its value, its unit (empty for a pure number)."""
+
+    label: str
+    value: Decimal
+    unit: str
 
 
 @dataclass(frozen=True, slots=True)
@@ -120,14 +193,20 @@ class Margin:
 class EvaluatedOffer:
     """One offer with its costs, its status and, where it is ranked, its rank and margin."""
 
-    offer: Offer
+    on_basis: OfferOnBasis
     status: Status
     per_unit: OwningCost
     lot: OwningCost
     findings: tuple[Finding, ...]
+    information: tuple[Information, ...] = ()
     rank: int | None = None
     margin: Margin | None = None
     above_winner: Decimal | None = None
+
+    @property
+    def offer(self) -> Offer:
+        """The offer as read."""
+        return self.on_basis.offer
 
     @property
     def bidder(self) -> str:

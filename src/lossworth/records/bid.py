@@ -52,6 +52,14 @@ class Offer(Record):
         Short-circuit impedance. [percent]
     delivery_weeks : Quantity or None
         Time of delivery. [week]
+    load_loss_rating_kva : Quantity or None
+        Rating at which the bidder states the load loss. [kVA]
+    reference_temperature_c : Quantity or None
+        Reference temperature of the stated load loss. [deg C]
+    resistive_loss_kw, stray_loss_kw : Quantity or None
+        The two parts of the load loss at the stated temperature, where the bidder splits it. [kW]
+    cooling_power_no_load_kw, cooling_power_rated_kw : Quantity or None
+        Cooling power at no load (Pc0) and at rated load (Pcs), where cooling is valued through A and B. [kW]
     quantity : Quantity or None
         Number of units offered, where the bidder states one.
     cooling : Entry or None
@@ -74,6 +82,12 @@ class Offer(Record):
     total_loss_kw: Quantity | None = None
     impedance_percent: Quantity | None = None
     delivery_weeks: Quantity | None = None
+    load_loss_rating_kva: Quantity | None = None
+    reference_temperature_c: Quantity | None = None
+    resistive_loss_kw: Quantity | None = None
+    stray_loss_kw: Quantity | None = None
+    cooling_power_no_load_kw: Quantity | None = None
+    cooling_power_rated_kw: Quantity | None = None
     quantity: Quantity | None = None
     cooling: Entry | None = None
     remark: Entry | None = None

@@ -11,17 +11,23 @@ from pydantic_core import PydanticCustomError
 
 from ..findings import Place
 from ..money import Rounding, is_currency_code
+from .profile import PriceBlock, PriceSeries, Profile
 from .quantity import Above0, AtLeast0, AtLeast1, Entry, Quantity, Rate, Record, ShareOf1, WholeNumber
 
 __all__ = [
     "AnnouncedRates",
     "BidFileRules",
+    "CoolingStage",
+    "CoolingValuation",
     "Derivation",
     "Economics",
     "Exchange",
     "Identity",
     "LoadingCondition",
+    "LossBasis",
     "Lot",
+    "Method",
+    "PresentValueDate",
     "PriceOfYear1",
     "RoundingPoint",
     "Rules",
@@ -48,6 +54,27 @@ class PriceOfYear1(StrEnum):
 
     PAID_IN_YEAR_1 = "paid in year 1"
     TODAY = "today's price, escalated before year 1"
+
+
+class Method(StrEnum):
+    """How rates are derived."""
+
+    PRESENT_WORTH = "present worth"
+    FIXED_CHARGE_RATE = "fixed charge rate"
+
+
+class PresentValueDate(StrEnum):
+    """To which date costs are discounted where the service begins after the date of the prices."""
+
+    SERVICE = "service date"
+    PRICE = "price date"
+
+
+class CoolingValuation(StrEnum):
+    """How cooling power is valued: by a rate of its own, or through A and B in two stages after IEC TS 60076-20."""
+
+    RATE_C = "auxiliary rate C"
+    THROUGH_A_AND_B = "through A and B"
 
 
 class RoundingPoint(StrEnum):
@@ -110,9 +137,22 @@ class Economics(Record):
     energy_price_escalation_percent: Rate | None = None
     energy_price_meaning: PriceOfYear1 = PriceOfYear1.PAID_IN_YEAR_1
     energy_price_by_year_per_kwh: tuple[AtLeast0, ...] | None = None
+    energy_price_series: PriceSeries | None = None
+    energy_price_blocks: tuple[PriceBlock, ...] = ()
+    carbon_cost_per_kwh: AtLeast0 | None = None
+    carbon_cost_escalation_percent: Rate | None = None
+    carbon_cost_counts: bool | None = None
+    carbon_intensity_kg_per_kwh: AtLeast0 | None = None
     demand_charge_per_kw_year: AtLeast0 | None = None
+    demand_charge_per_kw_month: AtLeast0 | None = None
     demand_charge_escalation_percent: Rate | None = None
     discount_rate_percent: Rate
+    discount_rate_terms: Literal["real", "nominal"] | None = None
+    price_terms: Literal["real", "nominal"] | None = None
+    fixed_charge_rate_percent: Above0 | None = None
+    price_date: datetime.date | None = None
+    service_date: datetime.date | None = None
+    present_value_at: PresentValueDate = PresentValueDate.SERVICE
     evaluation_period_years: WholeNumber
     timing: Timing
     upstream_gross_up: AtLeast1 | None = None
@@ -120,19 +160,38 @@ class Economics(Record):
     place: Place
 
 
+class CoolingStage(Record):
+    """Fans or pumps that run above a loading.
+
+    Parameters
+    ----------
+    above_load_pu : Quantity
+        Load above which the stage runs. [per unit of the rating of the guaranteed load loss]
+    share_of_auxiliary_loss : Quantity
+        Share of the guaranteed auxiliary loss that the stage needs; the shares of all stages make 1.
+    """
+
+    above_load_pu: Above0
+    share_of_auxiliary_loss: ShareOf1
+    place: Place
+
+
 class LoadingCondition(Record):
     """How the units of a lot will be loaded."""
 
+    profile: Profile | None = None
     load_factor: ShareOf1 | None = None
     loss_factor_coefficient: ShareOf1 | None = None
     loss_factor: ShareOf1 | None = None
-    peak_load_pu: Above0
+    peak_load_pu: Above0 | None = None
+    peak_load_by_year_pu: tuple[AtLeast0, ...] | None = None
     peak_load_growth_percent: Rate | None = None
     peak_load_cap_pu: Above0 | None = None
     peak_responsibility_factor: ShareOf1 | None = None
     hours_energized: Annotated[Quantity, AfterValidator(lambda q: _hours(q))] | None = None
     cooling_hours: Annotated[Quantity, AfterValidator(lambda q: _hours(q))] | None = None
     cooling_share_at_peak: ShareOf1 | None = None
+    cooling_stages: tuple[CoolingStage, ...] = ()
     source: Entry | None = None
     place: Place
 
@@ -159,8 +218,31 @@ class Derivation(Record):
 
     economics: Entry
     loading: Entry
+    method: Method = Method.PRESENT_WORTH
     round_rates_to: Quantity | None = None
     rounding: Rounding | None = None
+    place: Place
+
+
+class LossBasis(Record):
+    """Basis on which the tender wants load losses guaranteed, and which conversions to it the tender allows.
+
+    Parameters
+    ----------
+    reference_temperature_c : Quantity or None
+        Reference temperature of the load loss. [deg C]
+    load_loss_rating_kva : Quantity or None
+        Rating at which the load loss is guaranteed; the lot's rated power where absent. [kVA]
+    conductor : str or None
+        Metal of the windings, for the correction to another temperature.
+    convert : tuple of str
+        Conversions that the tender allows; all others are questions to the bidder.
+    """
+
+    reference_temperature_c: Above0 | None = None
+    load_loss_rating_kva: Above0 | None = None
+    conductor: Literal["copper", "aluminum"] | None = None
+    convert: tuple[Literal["rating", "temperature", "total loss"], ...] = ()
     place: Place
 
 
@@ -181,6 +263,8 @@ class Lot(Record):
     rates: AnnouncedRates | None = None
     derivation: Derivation | None = None
     study: Derivation | None = None
+    cooling_valuation: CoolingValuation = CoolingValuation.RATE_C
+    loss_basis: LossBasis | None = None
     place: Place
 
 

@@ -5,11 +5,13 @@ from __future__ import annotations
 from collections.abc import Iterable
 from decimal import ROUND_HALF_UP, Context, Decimal
 
-from ..evaluation.owning_cost import auxiliary_loss, loss_in_kw
+from ..evaluation.owning_cost import auxiliary_loss
 from ..evaluation.pricing import quoted_price
 from ..evaluation.result import (
     EvaluatedOffer,
     Evaluation,
+    Information,
+    LoadFacts,
     LotEvaluation,
     LotRates,
     Margin,
@@ -25,10 +27,13 @@ from ..trail import Figure
 from .figure_text import shown_figures
 from .formats import as_stated
 from .view import (
+    CoolingStageView,
     CostView,
     EvaluationView,
     ExchangeView,
+    Fact,
     FindingView,
+    LoadView,
     LotView,
     MarginView,
     OfferView,
@@ -38,7 +43,7 @@ from .view import (
     YearColumn,
     YearTableView,
 )
-from .wording import CAUTIONS, METHOD, limits, lot_recommendation, rate_sources, recommendation, rules
+from .wording import CAUTIONS, METHOD, formulas, limits, lot_recommendation, rate_sources, recommendation, rules
 
 __all__ = ["build_view", "rates_view"]
 
@@ -56,8 +61,11 @@ _COLUMNS = (
     ("year", "year", "1"),
     ("discount_factor", "discount factor", "1"),
     ("energy_price_per_kwh", "energy price", "{currency}/kWh"),
+    ("carbon_cost_per_kwh", "carbon cost", "{currency}/kWh"),
     ("demand_charge_per_kw_year", "demand charge", "{currency}/(kW year)"),
     ("peak_load_pu", "peak load, per unit", "1"),
+    ("cooling_hours", "cooling hours, by price", "h/year"),
+    ("cooling_share_at_peak", "cooling share at peak", "1"),
     ("no_load", "no-load, present value", "{currency}/kW"),
     ("load", "load, present value", "{currency}/kW"),
     ("auxiliary", "auxiliary, present value", "{currency}/kW"),
@@ -124,8 +132,8 @@ def _entering(offer: EvaluatedOffer, lot: LotEvaluation) -> dict[str, Figure | N
     read = offer.offer
     return {
         "unit_price": quoted_price(read),
-        "no_load_loss": loss_in_kw(read, "no_load_loss_kw", "no-load loss", read.no_load_loss_kw),
-        "load_loss": loss_in_kw(read, "load_loss_kw", "load loss", read.load_loss_kw),
+        "no_load_loss": offer.on_basis.no_load_loss,
+        "load_loss": offer.on_basis.load_loss,
         "auxiliary_loss": None if lot.rates.auxiliary is None else auxiliary_loss(read, lot.lot),
     }
 
@@ -175,13 +183,51 @@ def rates_view(rates: LotRates, sources: tuple[str, ...], currency: str) -> Rate
         unit=rates.no_load.unit,
         sources=sources,
         year_table=None if rates.table is None else _year_table(rates.table, currency),
+        method=rates.method,
+        formulas=formulas(rates),
+        load_profile=None if rates.load_facts is None else _load_profile(rates.load_facts),
     )
+
+
+def _load_profile(facts: LoadFacts) -> LoadView:
+    labels = {
+        "load_factor": "load factor",
+        "loss_factor_by_time": "loss factor, by time",
+        "loss_factor": "loss factor, by price" if "loss_factor_by_time" in facts.figures else "loss factor",
+    }
+    shown = [Fact(labels[name], as_stated(figure.value), "", figure.value) for name, figure in facts.figures.items()]
+    by_time = facts.figures.get("loss_factor_by_time")
+    if by_time is not None:
+        more = (100 * (facts.figures["loss_factor"].value / by_time.value - 1)).quantize(Decimal("0.01"))
+        shown.append(Fact("difference that the price makes", as_stated(more), "%", more))
+    shown += _implied_coefficient(facts)
+    return LoadView(
+        file=one_line(facts.profile.file),
+        remarks=tuple(one_line(remark) for remark in facts.profile.remarks),
+        facts=tuple(shown),
+        duration=facts.duration,
+        peak_load_by_year_pu=facts.peak_load_by_year_pu,
+        stages=tuple(
+            CoolingStageView(stage.above_load_pu, 100 * stage.share, stage.hours_by_year) for stage in facts.stages
+        ),
+    )
+
+
+def _implied_coefficient(facts: LoadFacts) -> list[Fact]:
+    """Coefficient k of the profile, beside the fixed ones that a load factor alone would need."""
+    load, loss = facts.figures["load_factor"].value, facts.figures.get("loss_factor_by_time")
+    by_time = facts.figures["loss_factor"].value if loss is None else loss.value
+    if load in (0, 1):
+        return []
+    k = ((by_time - load**2) / (load - load**2)).quantize(Decimal("0.001"))
+    return [Fact("implied coefficient k of the loss factor", as_stated(k), "", k)]
 
 
 def _year_table(table: YearTable, currency: str) -> YearTableView:
     columns = tuple(
         YearColumn(name, heading, unit.format(currency=currency), table.columns[name])
         for name, heading, unit in _COLUMNS
+        if name in table.columns
     )
     return YearTableView(table.id, columns, {name: figure.id for name, figure in table.inputs.items()})
 
@@ -208,7 +254,13 @@ def _offer(offer: EvaluatedOffer, lot: LotEvaluation, evaluation: Evaluation) ->
         margin=None if offer.margin is None else _margin(offer.margin),
         above_winner=offer.above_winner,
         reasons=() if offer.status is Status.RANKED else tuple(_reasons(offer.findings)),
+        assumptions=tuple(one_line(text) for text in offer.on_basis.assumptions),
+        information=tuple(_fact(fact) for fact in offer.information),
     )
+
+
+def _fact(fact: Information) -> Fact:
+    return Fact(fact.label, as_stated(fact.value), fact.unit, fact.value)
 
 
 def _reasons(findings: Iterable[Finding]) -> Iterable[str]:

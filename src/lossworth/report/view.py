@@ -7,11 +7,14 @@ from dataclasses import dataclass
 from decimal import Decimal
 
 __all__ = [
+    "CoolingStageView",
     "CostView",
     "EvaluationView",
     "ExchangeView",
+    "Fact",
     "FindingView",
     "InputFile",
+    "LoadView",
     "LotRatesView",
     "LotView",
     "MarginView",
@@ -20,6 +23,7 @@ __all__ = [
     "RatesReport",
     "RatesView",
     "RecordView",
+    "SensitivityRow",
     "ShownFigure",
     "YearColumn",
     "YearTableView",
@@ -133,6 +137,28 @@ class Particular:
 
 
 @dataclass(frozen=True, slots=True)
+class Fact:
+    """Information beside the money: never part of an amount.
+
+    Parameters
+    ----------
+    label : str
+        What it is.
+    text : str
+        The value as printed.
+    unit : str
+        Unit, empty for a pure number.
+    value : Decimal
+        The value.
+    """
+
+    label: str
+    text: str
+    unit: str
+    value: Decimal
+
+
+@dataclass(frozen=True, slots=True)
 class OfferView:
     """One offer as the papers show it.
 
@@ -160,6 +186,10 @@ class OfferView:
         Total owning cost of the lot less the winner's; zero for the winner; None where not ranked.
     reasons : tuple of str
         Why it is not ranked; empty where ranked.
+    assumptions : tuple of str
+        Conversions that were made on assumptions, each in a sentence; they bind nobody until the bidder confirms.
+    information : tuple of Fact
+        Efficiency and energy, beside the money.
     """
 
     bidder: str
@@ -178,6 +208,8 @@ class OfferView:
     margin: MarginView | None
     above_winner: Decimal | None
     reasons: tuple[str, ...]
+    assumptions: tuple[str, ...] = ()
+    information: tuple[Fact, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)
@@ -199,8 +231,10 @@ class YearTableView:
     id : str
         Identity.
     columns : tuple of YearColumn
-        ``year``, ``discount_factor``, ``energy_price_per_kwh``, ``demand_charge_per_kw_year``, ``peak_load_pu``,
-        ``no_load``, ``load``, ``auxiliary``; the last three are present values per kW, whose sums are the rates.
+        ``year``, ``discount_factor``, ``energy_price_per_kwh``, ``carbon_cost_per_kwh`` (only where it counts),
+        ``demand_charge_per_kw_year``, ``peak_load_pu``, ``cooling_hours`` and ``cooling_share_at_peak`` (only where
+        they follow the load from year to year; then values, not formulas), ``no_load``, ``load``, ``auxiliary``; the
+        last three are present values per kW, whose sums are the rates.
     inputs : mapping of str to str
         Name of an input of the derivation to the id of its figure: ``discount_rate_percent``,
         ``evaluation_period_years``, ``years_before_end`` (0, 0.5 or 1), ``energy_price_per_kwh`` (or
@@ -209,12 +243,63 @@ class YearTableView:
         ``load_factor`` and ``loss_factor_coefficient`` (absent where the loss factor is stated), ``loss_factor``,
         ``peak_load_pu``, ``peak_load_growth_percent``, ``peak_load_cap_pu`` (absent without cap),
         ``peak_responsibility_factor``, ``hours_energized``, ``hours_of_load``, ``cooling_hours``,
-        ``cooling_share_at_peak``, ``upstream_gross_up``.
+        ``cooling_share_at_peak``, ``upstream_gross_up``, ``price_delay_years`` and ``discount_delay_years`` (service
+        after the date of the prices: prices escalate by (1+e)^delay before year 1, discount factors are times
+        (1+r)^-delay), ``carbon_cost_per_kwh`` and ``carbon_cost_escalation_percent`` (absent where no carbon cost
+        counts), ``peak_load_year_1`` … instead of ``peak_load_pu`` for a table by year.
     """
 
     id: str
     columns: tuple[YearColumn, ...]
     inputs: Mapping[str, str]
+
+
+@dataclass(frozen=True, slots=True)
+class CoolingStageView:
+    """A stage of fans or pumps: from which load it runs, and how many hours in each year.
+
+    Parameters
+    ----------
+    above_load_pu : float
+        Load above which the stage runs. [per unit of the rating]
+    share_percent : float
+        Share of the auxiliary loss that it needs. [percent]
+    hours_by_year : tuple of float
+        Hours that it runs in each year of the evaluation period, counted by time. [hour/year]
+    """
+
+    above_load_pu: float
+    share_percent: float
+    hours_by_year: tuple[float, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class LoadView:
+    """Load of a lot that comes from a profile.
+
+    Parameters
+    ----------
+    file : str
+        The profile.
+    remarks : tuple of str
+        What was recognized and accepted when it was read.
+    facts : tuple of Fact
+        Load factor, loss factor by time and, where the price moves, by price with the difference; implied coefficient.
+    duration : tuple of (float, float)
+        Points of the load duration curve, falling: hours a year at or above the load, and the load over the peak load
+        of the year. At most a few hundred points, both ends included. [hour/year, 1]
+    peak_load_by_year_pu : tuple of float
+        Peak load of each year. [per unit of the rating]
+    stages : tuple of CoolingStageView
+        Cooling stages; empty where none follows the load.
+    """
+
+    file: str
+    remarks: tuple[str, ...]
+    facts: tuple[Fact, ...]
+    duration: tuple[tuple[float, float], ...]
+    peak_load_by_year_pu: tuple[float, ...]
+    stages: tuple[CoolingStageView, ...]
 
 
 @dataclass(frozen=True, slots=True)
@@ -232,7 +317,13 @@ class RatesView:
     sources : tuple of str
         Where the rates come from, in sentences.
     year_table : YearTableView or None
-        For derived rates.
+        For rates derived as present worth.
+    method : str
+        ``"announced rates"``, ``"present worth"`` or ``"fixed charge rate"``.
+    formulas : tuple of str
+        The formulas of the method with their source, a line each.
+    load_profile : LoadView or None
+        Where the load comes from a profile.
     """
 
     basis: str
@@ -242,6 +333,9 @@ class RatesView:
     unit: str
     sources: tuple[str, ...]
     year_table: YearTableView | None
+    method: str = ""
+    formulas: tuple[str, ...] = ()
+    load_profile: LoadView | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -347,13 +441,57 @@ class EvaluationView:
 
 
 @dataclass(frozen=True, slots=True)
+class SensitivityRow:
+    """What a stated change of one input does to the rates, by their exact derivatives.
+
+    Parameters
+    ----------
+    input : str
+        What is changed.
+    unit : str
+        Its unit, empty for a pure number.
+    value : str
+        What it is now, as printed.
+    change : str
+        The change, with sign and unit: ``"+1 percentage point"``.
+    a, b, c : float or None
+        Derivative of each rate times the change; None where the rate does not exist or does not depend on the input.
+        [currency/kW]
+    """
+
+    input: str
+    unit: str
+    value: str
+    change: str
+    a: float | None
+    b: float | None
+    c: float | None
+
+
+@dataclass(frozen=True, slots=True)
 class LotRatesView:
-    """Rates of one lot for the planner: those that the tender uses, and a study beside announced ones."""
+    """Rates of one lot for the planner: those that the tender uses, and a study beside announced ones.
+
+    Parameters
+    ----------
+    id, description : str
+        Of the lot.
+    used : RatesView
+        What the tender uses.
+    study : RatesView or None
+        A planner's derivation beside announced rates.
+    comparison : tuple of str
+        How far the announced rates lie from those of the study, in sentences.
+    sensitivity : tuple of SensitivityRow
+        Of the derived rates: those of the study where there is one, else the rates used.
+    """
 
     id: str
     description: str
     used: RatesView
     study: RatesView | None
+    comparison: tuple[str, ...] = ()
+    sensitivity: tuple[SensitivityRow, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from ..evaluation.result import LotEvaluation
+from ..evaluation.result import LotEvaluation, LotRates
 from ..findings import one_line
 from ..records.quantity import Entry
 from ..records.tender import Derivation, Lot, Tender
@@ -129,6 +129,41 @@ def rate_sources(tender: Tender, lot: Lot) -> tuple[str, ...]:
     if lot.derivation is not None:
         return derivation_sources(tender, lot.derivation, "The tender announces the derivation")
     return ()
+
+
+_PRESENT_WORTH = (
+    "A = G × Σ DF_t × (p_t × hours energized + D_t)",
+    "B = G × Σ DF_t × β_t² × (p_t × hours × loss factor + D_t × R²)",
+    "C = G × Σ DF_t × (p_t × hours of cooling + D_t × cooling share at peak)",
+    "DF_t = (1 + r)^−(t − φ), p_t energy price (with carbon cost, where it counts), D_t demand charge, β_t peak load "
+    "over the rating, R peak responsibility, G upstream gross-up, φ 0 at the end and 1 at the start of the year.",
+    "Form: present worth of the cost of losses year by year, as in IEEE C57.120 and IEC TS 60076-20 (from memory).",
+)
+_FIXED_CHARGE_RATE = (
+    "A = (D + hours energized × p) ÷ FCR",
+    "B = (D × R² + hours × p × loss factor) × PL² ÷ FCR",
+    "C = (D × cooling share at peak + hours of cooling × p) ÷ FCR",
+    "D demand charge, p energy price, R peak responsibility, PL equivalent annual peak load over the rating, FCR fixed "
+    "charge rate, which is not the capital recovery factor in general.",
+    "Form: annual cost of losses over the fixed charge rate, as in IEEE C57.120 (from memory).",
+)
+_FORMULAS = {"present worth": _PRESENT_WORTH, "fixed charge rate": _FIXED_CHARGE_RATE}
+
+
+def formulas(rates: LotRates) -> tuple[str, ...]:
+    """Formulas of the method by which rates were derived, with their source.
+
+    Parameters
+    ----------
+    rates : LotRates
+        Announced or derived.
+
+    Returns
+    -------
+    tuple of str
+        A line each; none for announced rates.
+    """
+    return _FORMULAS.get(rates.method, ())
 
 
 def derivation_sources(tender: Tender, derivation: Derivation, opening: str) -> tuple[str, ...]:
