@@ -2,7 +2,10 @@
 
 from __future__ import annotations
 
+from pydantic import Field
+
 from ..findings import Place
+from .commercial import OfferTerms
 from .quantity import Entry, Quantity, Record
 
 __all__ = ["NATURAL_COOLING", "Offer", "is_naturally_cooled"]
@@ -66,6 +69,10 @@ class Offer(Record):
         Cooling designation, where the bidder states one; else the lot's holds.
     remark : Entry or None
         The bidder's own words.
+    alternative : Entry or None
+        Name of the alternative, where the row is one; the base offer has none.
+    terms : OfferTerms
+        Commercial terms.
     place : Place
         The row.
     columns : dict of str to Place
@@ -91,5 +98,12 @@ class Offer(Record):
     quantity: Quantity | None = None
     cooling: Entry | None = None
     remark: Entry | None = None
+    alternative: Entry | None = None
+    terms: OfferTerms = Field(default_factory=OfferTerms)
     place: Place
     columns: dict[str, Place]
+
+    @property
+    def name(self) -> str:
+        """Bidder, and the alternative where the offer is one."""
+        return self.bidder.value if self.alternative is None else f"{self.bidder}, alternative {self.alternative}"

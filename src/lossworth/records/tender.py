@@ -11,8 +11,10 @@ from pydantic_core import PydanticCustomError
 
 from ..findings import Place
 from ..money import Rounding, is_currency_code
+from .commercial import DeliveryLevel, Item, PaymentTerms, Preference, RegulationLimit, SiteCost, Taxes
 from .profile import PriceBlock, PriceSeries, Profile
 from .quantity import Above0, AtLeast0, AtLeast1, Entry, Quantity, Rate, Record, ShareOf1, WholeNumber
+from .rules import AnnouncedRules
 
 __all__ = [
     "AnnouncedRates",
@@ -105,10 +107,11 @@ class Identity(Record):
 
 
 class Rules(Record):
-    """How money is rounded."""
+    """How money is rounded, and the settings on which regimes disagree."""
 
     rounding: Rounding
     rounding_applies_to: RoundingPoint
+    announced: AnnouncedRules = Field(default_factory=AnnouncedRules)
     place: Place
 
 
@@ -260,6 +263,16 @@ class Lot(Record):
     impedance_percent: Above0 | None = None
     impedance_tolerance_percentage_points: AtLeast0 | None = None
     latest_delivery_weeks: Above0 | None = None
+    delivery_without_adder_weeks: AtLeast0 | None = None
+    delivery_adder_percent_per_week: AtLeast0 | None = None
+    delivery_adder_per_week: AtLeast0 | None = None
+    maximum_sound_level_db: Above0 | None = None
+    accepted_liquids: tuple[str, ...] = ()
+    pcb_free_required: bool = False
+    regulation: RegulationLimit | None = None
+    items: tuple[Item, ...] = ()
+    site_costs: tuple[SiteCost, ...] = ()
+    estimated_unit_price: Above0 | None = None
     rates: AnnouncedRates | None = None
     derivation: Derivation | None = None
     study: Derivation | None = None
@@ -284,6 +297,12 @@ class Tender(Record):
     exchange: Exchange | None = None
     economics: dict[str, Economics] = Field(default_factory=dict)
     loading: dict[str, LoadingCondition] = Field(default_factory=dict)
+    delivered_point: Entry | None = None
+    delivery_levels: tuple[DeliveryLevel, ...] = ()
+    taxes: Taxes | None = None
+    payment_terms: PaymentTerms | None = None
+    preference: Preference | None = None
+    planned_award: datetime.date | None = None
     lots: tuple[Lot, ...] = Field(min_length=1)
 
     def lot(self, id: str) -> Lot | None:
