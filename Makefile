@@ -10,7 +10,8 @@ MAKEFLAGS += --no-builtin-rules
 PYTHON ?= python3
 WORKERS ?= 2
 BIN := .venv/bin
-SCRIPTS := sample_bids/make_sample_bids.py benchmarks/help_time.py docs/make_findings.py docs/make_pictures.py \
+SCRIPTS := sample_bids/make_sample_bids.py benchmarks/help_time.py benchmarks/rates_speed.py \
+	benchmarks/cooling_speed.py docs/make_findings.py docs/make_pictures.py \
 	docs/make_load_profile_table.py tests/wheel_check.py
 
 export PIP_DISABLE_PIP_VERSION_CHECK := 1
@@ -59,8 +60,10 @@ pictures: .venv/installed-for-tests ## make the pictures of the README anew
 findings: .venv/installed ## write docs/findings.md anew from the table of kinds
 	$(BIN)/python docs/make_findings.py
 
-benchmark: .venv/installed ## how long the help takes
+benchmark: .venv/installed-for-tests ## how long the help, and the rates of many scenarios take
 	$(BIN)/python benchmarks/help_time.py
+	$(BIN)/python benchmarks/rates_speed.py
+	$(BIN)/python benchmarks/cooling_speed.py
 
 clean: ## remove what was made here, also the virtual environment
 	rm -rf .venv build dist *.egg-info src/*.egg-info .pytest_cache .mypy_cache .ruff_cache .hypothesis sample_bids/papers

@@ -20,6 +20,8 @@ DEMO = [
     ("4", 35, 0.55, "0.3396", 0.60, 0.010, 0.8, 0.95, 600, 1, "11592.80", "2008.10", "1536.81"),
 ]
 
+CARBON_AND_DATES = ("carbon_cost_per_kwh", "carbon_cost_escalation", "price_delay_years", "discount_delay_years")
+
 
 def plain_inputs(**changes: Any) -> dict[str, Any]:
     """Constant price and load over three years without discount: sums that can be told at sight."""
@@ -260,6 +262,8 @@ def test_year_table__one_period_only() -> None:
         ("energy_price_per_kwh", -0.01, "at least 0"),
         ("energy_price_escalation", -1, "above -1"),
         ("escalate_before_year_1", 2, "a whole number, at least 0 and at most 1"),
+        ("carbon_cost_per_kwh", -0.01, "at least 0"),
+        ("carbon_cost_escalation", -1, "above -1"),
         ("demand_charge_per_kw_year", -1, "at least 0"),
         ("demand_charge_escalation", -1, "above -1"),
         ("loss_factor", 1.01, "at least 0 and at most 1"),
@@ -272,6 +276,8 @@ def test_year_table__one_period_only() -> None:
         ("cooling_hours", 8785, "at least 0 and at most 8784"),
         ("cooling_share_at_peak", -0.5, "at least 0 and at most 1"),
         ("upstream_gross_up", 0.9, "at least 1"),
+        ("price_delay_years", -0.5, "at least 0 and at most 100"),
+        ("discount_delay_years", 2028, "at least 0 and at most 100"),
     ],
 )
 @pytest.mark.parametrize("function", [loss_capitalization_rates, year_table])
@@ -282,7 +288,7 @@ def test_inputs__out_of_bounds(function: Any, name: str, value: float, bound: st
     assert str(refusal.value) == f"{name}: must be {bound}, got {value:g}"
 
 
-@pytest.mark.parametrize("name", sorted(year_inputs()))
+@pytest.mark.parametrize("name", sorted({*year_inputs(), *CARBON_AND_DATES}))
 @pytest.mark.parametrize("value", [np.nan, -np.inf, "1", None, [0.5, np.nan]])
 def test_inputs__not_a_number(name: str, value: Any) -> None:
     """nan, infinity, text and missing values are refused by the name of the input, for every input."""

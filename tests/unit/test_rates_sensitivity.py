@@ -17,6 +17,8 @@ CONTINUOUS = [
     "years_before_end",
     "energy_price_per_kwh",
     "energy_price_escalation",
+    "carbon_cost_per_kwh",
+    "carbon_cost_escalation",
     "demand_charge_per_kw_year",
     "demand_charge_escalation",
     "loss_factor",
@@ -29,10 +31,26 @@ CONTINUOUS = [
     "cooling_hours",
     "cooling_share_at_peak",
     "upstream_gross_up",
+    "price_delay_years",
+    "discount_delay_years",
 ]
+#: Inputs that the builder leaves at their default of 0.
+CARBON_AND_DATES = {
+    "carbon_cost_per_kwh": 0.0,
+    "carbon_cost_escalation": 0.0,
+    "price_delay_years": 0.0,
+    "discount_delay_years": 0.0,
+}
 CASES = {
     "all at work": {},
     "today's price": {"escalate_before_year_1": True},
+    "carbon and a later service date": {
+        "carbon_cost_per_kwh": 0.02,
+        "carbon_cost_escalation": 0.03,
+        "price_delay_years": 2.25,
+        "discount_delay_years": 1.5,
+        "escalate_before_year_1": True,
+    },
     "no cap": {"peak_load_cap_pu": np.inf},
     "no discount": {"discount_rate": 0.0, "years_before_end": 0.25},
     "nothing moves": {
@@ -57,7 +75,7 @@ def by_50_digits(name: str, inputs: dict[str, Any]) -> list[float]:
 @pytest.mark.parametrize("name", CONTINUOUS)
 def test_rate_derivatives__fifty_digits(name: str, case: str) -> None:
     """Each derivative equals the numerical one to twelve digits."""
-    inputs = dict(year_inputs(hours_of_load=8760.0, **CASES[case]))
+    inputs = dict(year_inputs(hours_of_load=8760.0, **{**CARBON_AND_DATES, **CASES[case]}))
     if inputs[name] == np.inf:
         assert float(rate_derivatives(**inputs)[name].load) == 0
         return
@@ -88,8 +106,9 @@ def test_rate_derivatives__tables_by_year_have_none() -> None:
     )
     slopes, plain = rate_derivatives(**inputs), rate_derivatives(**year_inputs())
     assert set(plain) - set(slopes) == {"energy_price_per_kwh", "energy_price_escalation"}
-    for name, rates in slopes.items():
-        np.testing.assert_allclose(rates.load, plain[name].load, rtol=1e-12)
+    # prices by year are those of their years, so that a later service date does not move them
+    for name in set(slopes) - {"price_delay_years"}:
+        np.testing.assert_allclose(slopes[name].load, plain[name].load, rtol=1e-12)
 
 
 def test_rate_derivatives__load_at_its_cap_counts_as_not_capped() -> None:

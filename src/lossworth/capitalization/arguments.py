@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
@@ -22,6 +23,9 @@ __all__ = [
 ]
 
 Array = NDArray[np.float64]
+
+#: Elements that a check looks at together, so that checks of many scenarios take no memory of their number.
+_CHUNK = 65_536
 
 
 @dataclass(frozen=True, slots=True)
@@ -123,8 +127,15 @@ def checked(name: str, value: ArrayLike, bounds: Bounds) -> Array:
     if raw.size == 0:
         raise ValueError(f"{name}: must have at least one value, got an empty array")
     values = raw.astype(np.float64, copy=False)
-    refuse(name, values, bounds.broken_by(values), str(bounds))
+    if not _everywhere(lambda part: ~bounds.broken_by(part), values):
+        refuse(name, values, bounds.broken_by(values), str(bounds))
     return values
+
+
+def _everywhere(rule: Callable[[Array], NDArray[np.bool_]], values: Array) -> bool:
+    """Whether a rule holds for every element, a part at a time."""
+    flat = values.reshape(-1) if values.flags.c_contiguous else values.flat
+    return all(rule(flat[start : start + _CHUNK]).all() for start in range(0, values.size, _CHUNK))
 
 
 def refuse(name: str, values: Array, broken: NDArray[np.bool_], rule: str) -> None:
@@ -226,7 +237,7 @@ def finite(result: ArrayLike, what: str) -> Array:
         If an element is infinite or not a number.
     """
     values = np.asarray(result, dtype=np.float64)
-    if not np.isfinite(values).all():
+    if not _everywhere(np.isfinite, values):
         raise ValueError(f"{what}: exceeds the range of floating-point numbers for these arguments")
     return values
 

@@ -148,7 +148,11 @@ def auxiliary_rate(
 
     Notes
     -----
-    .. math:: C = G \sum_t DF_t \left(p_t \sum_{h:\ \beta_t s_h > \theta} v_h w_h + D_t\, [\beta_t R > \theta]\right)
+    .. math:: C = G \sum_t DF_t \left((p_t + \gamma_t) \sum_{h:\ \beta_t s_h > \theta} v_h w_h
+       + D_t\, [\beta_t R > \theta]\right)
+
+    with carbon cost :math:`\gamma_t` and delays as in `rates.loss_capitalization_rates`; where the duration curve has
+    prices, the carbon cost counts by them too.
 
     Each year of each scenario costs one bisection of the sorted profile. Memory beyond inputs and result does not grow
     with years, hours or scenarios. Several stages are several calls, each with its own loss.

@@ -19,6 +19,8 @@ BLOCK = 8_192
 _HOURS = Bounds(0, 8784)
 #: More years than any asset lives; a guard against a period given in hours or as a calendar year.
 _YEARS = Bounds(1, 1000, whole=True)
+#: Years between two dates of a tender; the upper end is a guard against a calendar year.
+_DELAY = Bounds(0, 100)
 
 
 class PriceAndLoadInputs(TypedDict, total=False):
@@ -43,7 +45,12 @@ class PriceAndLoadInputs(TypedDict, total=False):
         Fraction, above -1. Default 0; not together with prices by year. [1/year]
     escalate_before_year_1 : array_like of bool
         False: the energy price is that paid in year 1. True: it is today's, and escalates before the first payment.
-        Default False. The demand charge is always that of year 1.
+        Default False. The demand charge and the carbon cost are always those of year 1.
+    carbon_cost_per_kwh : array_like
+        Cost of carbon per lost kWh, at least 0, added to the energy price of the year. Default 0: not counted.
+        [currency/kWh]
+    carbon_cost_escalation : array_like
+        Fraction, above -1. Default 0. [1/year]
     demand_charge_per_kw_year : array_like
         Demand or capacity charge, at least 0. Default 0. [currency/(kW year)]
     demand_charge_by_year_per_kw : array_like
@@ -60,6 +67,13 @@ class PriceAndLoadInputs(TypedDict, total=False):
         Greatest peak load, above 0, infinite for none. Default infinite; also acts on loads by year. [per unit]
     upstream_gross_up : array_like
         1 over the efficiency of the network up to the unit, at least 1. Default 1. [1]
+    price_delay_years : array_like
+        Years from the date of the stated prices to the service date, 0 to 100, fractions allowed. Energy price, carbon
+        cost and demand charge escalate over them before year 1, each by its own escalation; tables by year are the
+        prices of their years and stay. Default 0. [year]
+    discount_delay_years : array_like
+        Years from the date of the present values to the service date, 0 to 100, fractions allowed: costs are
+        discounted over them too. Default 0: present values at the service date. [year]
     """
 
     discount_rate: Required[ArrayLike]
@@ -69,6 +83,8 @@ class PriceAndLoadInputs(TypedDict, total=False):
     energy_price_by_year_per_kwh: ArrayLike | None
     energy_price_escalation: ArrayLike
     escalate_before_year_1: ArrayLike
+    carbon_cost_per_kwh: ArrayLike
+    carbon_cost_escalation: ArrayLike
     demand_charge_per_kw_year: ArrayLike | None
     demand_charge_by_year_per_kw: ArrayLike | None
     demand_charge_escalation: ArrayLike
@@ -77,6 +93,8 @@ class PriceAndLoadInputs(TypedDict, total=False):
     peak_load_growth: ArrayLike
     peak_load_cap_pu: ArrayLike
     upstream_gross_up: ArrayLike
+    price_delay_years: ArrayLike
+    discount_delay_years: ArrayLike
 
 
 class YearModelInputs(PriceAndLoadInputs, total=False):
@@ -120,12 +138,16 @@ _BOUNDS: dict[str, Bounds] = {
     "energy_price_per_kwh": AT_LEAST_0,
     "energy_price_escalation": RATE,
     "escalate_before_year_1": Bounds(0, 1, whole=True),
+    "carbon_cost_per_kwh": AT_LEAST_0,
+    "carbon_cost_escalation": RATE,
     "demand_charge_per_kw_year": AT_LEAST_0,
     "demand_charge_escalation": RATE,
     "peak_load_pu": AT_LEAST_0,
     "peak_load_growth": RATE,
     "peak_load_cap_pu": Bounds(0, lowest_included=False, infinity=True),
     "upstream_gross_up": Bounds(1),
+    "price_delay_years": _DELAY,
+    "discount_delay_years": _DELAY,
     "loss_factor": SHARE,
     "peak_responsibility_factor": SHARE,
     "hours_energized": _HOURS,
@@ -137,11 +159,15 @@ _DEFAULTS: dict[str, float] = {
     "years_before_end": 0.0,
     "energy_price_escalation": 0.0,
     "escalate_before_year_1": 0.0,
+    "carbon_cost_per_kwh": 0.0,
+    "carbon_cost_escalation": 0.0,
     "demand_charge_per_kw_year": 0.0,
     "demand_charge_escalation": 0.0,
     "peak_load_growth": 0.0,
     "peak_load_cap_pu": np.inf,
     "upstream_gross_up": 1.0,
+    "price_delay_years": 0.0,
+    "discount_delay_years": 0.0,
     "peak_responsibility_factor": 1.0,
     "hours_energized": 8760.0,
     "hours_of_load": 8760.0,

@@ -179,7 +179,8 @@ def equivalent_peak_load(
     discount_factor : array_like
         :math:`DF_t`, years on the last axis. [1]
     energy_price_per_kwh : array_like
-        :math:`p_t`, years on the last axis; a single number where the price is constant. [currency/kWh]
+        :math:`p_t`, years on the last axis; a single number where the price is constant. With a carbon cost the sum of
+        both. [currency/kWh]
 
     Returns
     -------

@@ -37,7 +37,7 @@ class RunningSum:
 
 
 def present_prices(model: Model) -> Iterator[Array]:
-    """Present value of the energy price of each year.
+    """Present value of the energy price of each year, with the carbon cost where there is one.
 
     Parameters
     ----------
@@ -47,11 +47,15 @@ def present_prices(model: Model) -> Iterator[Array]:
     Returns
     -------
     iterator of ndarray
-        DF_t p_t; 0 once a scenario's own evaluation period is over. [currency/kWh]
+        DF_t (p_t + gamma_t); 0 once a scenario's own evaluation period is over. [currency/kWh]
     """
     escalation = model["energy_price_escalation"]
     first = 1 + escalation * model["escalate_before_year_1"]
-    return _present_values(model, "energy_price_per_kwh", escalation, first)
+    prices = _present_values(model, "energy_price_per_kwh", escalation, first)
+    if not model["carbon_cost_per_kwh"].any():
+        return prices
+    costs = _present_values(model, "carbon_cost_per_kwh", model["carbon_cost_escalation"], np.ones(()))
+    return _together(prices, costs)
 
 
 def present_charges(model: Model) -> Iterator[Array]:
@@ -136,14 +140,26 @@ def quantity(model: Model, name: str, growth: Array | None = None) -> Iterator[A
         value *= ratio
 
 
+def _together(left: Iterator[Array], right: Iterator[Array]) -> Iterator[Array]:
+    """Sum of two quantities, the same array each year."""
+    both: Array | None = None
+    for one, other in zip(left, right, strict=True):
+        if both is None:
+            both = np.empty(np.broadcast_shapes(one.shape, other.shape))
+        yield np.add(one, other, out=both)
+
+
 def _present_values(model: Model, name: str, growth: Array, first: Array) -> Iterator[Array]:
     """Discounted values of a quantity, until each scenario's evaluation period is over."""
     r, periods = model["discount_rate"], model["evaluation_period_years"]
-    factor = np.exp((model["years_before_end"] - 1) * np.log1p(r)) * np.ones_like(periods)
+    before_year_1 = model["years_before_end"] - 1 - model["discount_delay_years"]
+    factor = np.exp(before_year_1 * np.log1p(r)) * np.ones_like(periods)
     if name in model.tables:
         factors = _geometric(np.asarray(factor), 1 / (1 + r), periods)
         yield from (value * factor for value, factor in zip(model.tables[name], factors, strict=True))
     else:
+        if model["price_delay_years"].any():
+            first = first * np.exp(model["price_delay_years"] * np.log1p(growth))
         first = np.asarray(model[name] * first * factor * np.ones_like(growth))
         yield from _geometric(first, (1 + growth) / (1 + r), periods)
 

@@ -53,13 +53,19 @@ class YearTable:
     year : ndarray of int
         1 to N, one axis. [year]
     discount_factor : ndarray
-        Present value of 1 paid in the year. [1]
+        Present value of 1 paid in the year, at the service date or `discount_delay_years` before. [1]
     energy_price_per_kwh : ndarray
-        Price of the year. [currency/kWh]
+        Price of the year, without the carbon cost. [currency/kWh]
+    carbon_cost_per_kwh : ndarray
+        Carbon cost of the year, which is added to the price. [currency/kWh]
     demand_charge_per_kw_year : ndarray
         Demand charge of the year. [currency/(kW year)]
     peak_load_pu : ndarray
         Peak load of the year. [per unit of the rating of the guaranteed load loss]
+    cooling_hours : ndarray
+        Hours of cooling of the year. [hour/year]
+    cooling_share_at_peak : ndarray
+        Share of the cooling that is on at system peak in the year. [1]
     no_load, load, auxiliary : ndarray
         Present value of the year's cost of 1 kW of each loss; the sums over the years are A, B and C. [currency/kW]
     """
@@ -67,8 +73,11 @@ class YearTable:
     year: NDArray[np.int64]
     discount_factor: Array
     energy_price_per_kwh: Array
+    carbon_cost_per_kwh: Array
     demand_charge_per_kw_year: Array
     peak_load_pu: Array
+    cooling_hours: Array
+    cooling_share_at_peak: Array
     no_load: Array
     load: Array
     auxiliary: Array
@@ -99,15 +108,23 @@ def loss_capitalization_rates(**inputs: Unpack[YearModelInputs]) -> Rates:
     Notes
     -----
     .. math::
-        A &= G \sum_t DF_t\, (p_t\, h_u + D_t) \\
-        B &= G \sum_t DF_t\, \beta_t^2\, (p_t\, h_s\, LsF + D_t R^2) \\
-        C &= G \sum_t DF_t\, (p_t\, h_q + D_t\, \kappa)
+        A &= G \sum_t DF_t\, ((p_t + \gamma_t)\, h_u + D_t) \\
+        B &= G \sum_t DF_t\, \beta_t^2\, ((p_t + \gamma_t)\, h_s\, LsF + D_t R^2) \\
+        C &= G \sum_t DF_t\, ((p_t + \gamma_t)\, h_q + D_t\, \kappa)
 
-    with :math:`DF_t = (1 + r)^{-(t - \varphi)}`, price :math:`p_t`, demand charge :math:`D_t`, peak load
+    with :math:`DF_t = (1 + r)^{-(t - \varphi + \delta_r)}`, energy price
+    :math:`p_t = p_1 (1 + e)^{t - 1 + \epsilon + \delta_p}`, carbon cost
+    :math:`\gamma_t = \gamma_1 (1 + e_\gamma)^{t - 1 + \delta_p}`, demand charge
+    :math:`D_t = D_1 (1 + e_D)^{t - 1 + \delta_p}`, peak load
     :math:`\beta_t = \min(\beta_1 (1 + g)^{t-1}, \beta_{cap})`, hours energized :math:`h_u`, of load :math:`h_s`
     and of cooling :math:`h_q`, loss factor :math:`LsF`, peak responsibility R, cooling share at peak
-    :math:`\kappa`, upstream gross-up G. The sums run over the years in place: no array of years x scenarios is made,
-    and memory beyond inputs and result does not grow with the scenarios.
+    :math:`\kappa`, upstream gross-up G. :math:`\epsilon` is 1 for today's price and else 0, :math:`\delta_p` the
+    delay of prices, :math:`\delta_r` that of the discounting. The sums run over the years in place: no array of years
+    x scenarios is made, and memory beyond inputs and result does not grow with the scenarios.
+
+    Where loss factor and hours are price-weighted, the carbon cost is weighted like the price. A carbon cost that is
+    the same in every hour is valued exactly by a second call with the carbon cost as the energy price, plain loss
+    factor and hours and no demand charge: the rates of both calls add up.
 
     Not included: a load shape that changes over the years, prices by hour (give a price-weighted loss factor and
     price-weighted hours), cooling that follows the growing load (`cooling`), taxes, residual value of the losses,
@@ -167,7 +184,7 @@ def _block_rates(model: Model) -> tuple[Array, Array, Array]:
 
 
 def _years(model: Model) -> Iterator[tuple[Array, Array, Array, Array, Array]]:
-    """Present price and charge, squared peak load, cooling hours and share, year after year."""
+    """Present cost of energy and charge, squared peak load, cooling hours and share, year after year."""
     return zip(
         present_prices(model),
         present_charges(model),
@@ -224,8 +241,11 @@ def year_table(**inputs: Unpack[YearModelInputs]) -> YearTable:
         arrays = (
             columns.discount_factor,
             columns.price,
+            columns.carbon,
             columns.charge,
             columns.load,
+            columns["cooling_hours"],
+            columns["cooling_share_at_peak"],
             present * columns.no_load_cost,
             present * columns.load**2 * columns.load_cost_at_1,
             present * columns.auxiliary_cost,

@@ -39,12 +39,14 @@ def rate_derivatives(**inputs: Unpack[YearModelInputs]) -> dict[str, Rates]:
     Term by term of the sums, with
 
     .. math::
-        \frac{\partial DF_t}{\partial r} = -\frac{t - \varphi}{1 + r} DF_t, \quad
-        \frac{\partial DF_t}{\partial \varphi} = \ln(1 + r)\, DF_t, \quad
-        \frac{\partial p_t}{\partial e} = \frac{t - 1 + \epsilon}{1 + e} p_t, \quad
+        \frac{\partial DF_t}{\partial r} = -\frac{t - \varphi + \delta_r}{1 + r} DF_t, \quad
+        \frac{\partial DF_t}{\partial \varphi} = -\frac{\partial DF_t}{\partial \delta_r} = \ln(1 + r)\, DF_t, \quad
+        \frac{\partial p_t}{\partial e} = \frac{t - 1 + \epsilon + \delta_p}{1 + e} p_t, \quad
+        \frac{\partial p_t}{\partial \delta_p} = \ln(1 + e)\, p_t, \quad
         \frac{\partial \beta_t^2}{\partial g} = \frac{2 (t - 1)}{1 + g} \beta_t^2
 
-    where :math:`\epsilon` is 1 for today's price and else 0, and the last holds in years without cap; with the cap
+    where :math:`\epsilon` is 1 for today's price and else 0, carbon cost and demand charge move like the price
+    without :math:`\epsilon`, and the last holds in years without cap; with the cap
     :math:`\partial \beta_t^2 / \partial \beta_{cap} = 2 \beta_t`. In a year whose load equals the cap exactly, load and
     growth count as not capped. Rates, shares and growths are fractions: 0.01 of the derivative is the change for one
     percentage point, to first order.
@@ -152,32 +154,58 @@ def _of_time(columns: YearColumns) -> dict[str, _Terms]:
     r, phi = columns["discount_rate"], columns["years_before_end"]
     costs = _costs(columns)
     return {
-        "discount_rate": _times((phi - columns.year) / (1 + r), costs),
+        "discount_rate": _times((phi - columns.year - columns["discount_delay_years"]) / (1 + r), costs),
         "years_before_end": _times(np.log1p(r), costs),
+        "discount_delay_years": _times(-np.log1p(r), costs),
+        "price_delay_years": _to_price_delay(columns),
         "upstream_gross_up": _times(1 / columns["upstream_gross_up"], costs),
     }
 
 
-def _of_prices(columns: YearColumns, model: Model) -> dict[str, _Terms]:
-    if "energy_price_per_kwh" in model.tables:
-        return {}
+def _hours(columns: YearColumns) -> _Terms:
+    """Hours in which 1 kW of each loss costs energy. [hour/year]"""
     load_hours = columns["hours_of_load"] * columns["loss_factor"]
-    hours = (columns["hours_energized"], columns.load**2 * load_hours, columns["cooling_hours"])
-    to_price = _times(_present(columns) * columns.price_growth, hours)
-    escalations = columns.year - 1 + columns["escalate_before_year_1"]
-    to_escalation = columns["energy_price_per_kwh"] * escalations / (1 + columns["energy_price_escalation"])
-    return {"energy_price_per_kwh": to_price, "energy_price_escalation": _times(to_escalation, to_price)}
+    return (columns["hours_energized"], columns.load**2 * load_hours, columns["cooling_hours"])
+
+
+def _shares(columns: YearColumns) -> _Terms:
+    """Part that 1 kW of each loss has in the demand. [1]"""
+    at_peak = columns.load**2 * columns["peak_responsibility_factor"] ** 2
+    return (np.ones(1), at_peak, columns["cooling_share_at_peak"])
+
+
+def _to_price_delay(columns: YearColumns) -> _Terms:
+    energy = columns.price * np.log1p(columns["energy_price_escalation"])
+    energy = energy + columns.carbon * np.log1p(columns["carbon_cost_escalation"])
+    demand = columns.charge * np.log1p(columns["demand_charge_escalation"])
+    present = _present(columns)
+    a, b, c = (
+        present * (energy * hours + demand * share)
+        for hours, share in zip(_hours(columns), _shares(columns), strict=True)
+    )
+    return a, b, c
+
+
+def _of_prices(columns: YearColumns, model: Model) -> dict[str, _Terms]:
+    hours, present = _hours(columns), _present(columns)
+    escalations = columns.year - 1 + columns["price_delay_years"]
+    to_carbon = _times(present * columns.carbon_growth, hours)
+    to_escalation = columns["carbon_cost_per_kwh"] * escalations / (1 + columns["carbon_cost_escalation"])
+    terms = {"carbon_cost_per_kwh": to_carbon, "carbon_cost_escalation": _times(to_escalation, to_carbon)}
+    if "energy_price_per_kwh" not in model.tables:
+        to_price = _times(present * columns.price_growth, hours)
+        escalations = escalations + columns["escalate_before_year_1"]
+        to_escalation = columns["energy_price_per_kwh"] * escalations / (1 + columns["energy_price_escalation"])
+        terms |= {"energy_price_per_kwh": to_price, "energy_price_escalation": _times(to_escalation, to_price)}
+    return terms
 
 
 def _of_charges(columns: YearColumns, model: Model) -> dict[str, _Terms]:
     if "demand_charge_per_kw_year" in model.tables:
         return {}
-    at_peak = columns.load**2 * columns["peak_responsibility_factor"] ** 2
-    shares = (np.ones(1), at_peak, columns["cooling_share_at_peak"])
-    to_charge = _times(_present(columns) * columns.charge_growth, shares)
-    to_escalation = (
-        columns["demand_charge_per_kw_year"] * (columns.year - 1) / (1 + columns["demand_charge_escalation"])
-    )
+    to_charge = _times(_present(columns) * columns.charge_growth, _shares(columns))
+    escalations = columns.year - 1 + columns["price_delay_years"]
+    to_escalation = columns["demand_charge_per_kw_year"] * escalations / (1 + columns["demand_charge_escalation"])
     return {"demand_charge_per_kw_year": to_charge, "demand_charge_escalation": _times(to_escalation, to_charge)}
 
 
@@ -195,15 +223,15 @@ def _of_loads(columns: YearColumns, model: Model) -> dict[str, _Terms]:
 
 def _of_factors_and_hours(columns: YearColumns, model: Model) -> dict[str, _Terms]:
     present = _present(columns)
-    price, square = present * columns.price, present * columns.load**2
-    energy_square = square * columns.price
+    energy, square = present * columns.energy_cost, present * columns.load**2
+    energy_square = square * columns.energy_cost
     responsibility = square * columns.charge * 2 * columns["peak_responsibility_factor"]
     terms = {
         "loss_factor": (_ZERO, energy_square * columns["hours_of_load"], _ZERO),
         "hours_of_load": (_ZERO, energy_square * columns["loss_factor"], _ZERO),
         "peak_responsibility_factor": (_ZERO, responsibility, _ZERO),
-        "hours_energized": (price, _ZERO, _ZERO),
-        "cooling_hours": (_ZERO, _ZERO, price),
+        "hours_energized": (energy, _ZERO, _ZERO),
+        "cooling_hours": (_ZERO, _ZERO, energy),
         "cooling_share_at_peak": (_ZERO, _ZERO, present * columns.charge),
     }
     return {name: term for name, term in terms.items() if name not in model.tables}

@@ -27,6 +27,10 @@ def rates(tender: Path, years: bool) -> None:
     reading = read_tender_only(tender)
     if reading.tender is None or any_stops(reading.findings):
         raise EvaluationStopped(reading.findings)
+    from ..evaluation.load_and_price import check_load_and_price
+
+    if findings := check_load_and_price(reading.tender):
+        raise EvaluationStopped((*reading.findings, *findings))
     from ..report.build_rates_report import build_rates_report
     from ..report.terminal import rates_text
 

@@ -100,8 +100,9 @@ def _equivalent_peak_load(naming: Naming, inputs: Mapping[str, Figure]) -> Figur
     if not moves:
         return inputs["peak_load_pu"]
     table = year_table(**model_inputs(inputs, None))
+    price = table.energy_price_per_kwh + table.carbon_cost_per_kwh
     equivalent = equivalent_peak_load(
-        table.peak_load_pu, discount_factor=table.discount_factor, energy_price_per_kwh=table.energy_price_per_kwh
+        table.peak_load_pu, discount_factor=table.discount_factor, energy_price_per_kwh=price
     )
     statement = (
         "root of the mean squared peak load of the years, weighted with discount factor times energy price "

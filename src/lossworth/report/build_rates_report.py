@@ -5,8 +5,6 @@ from __future__ import annotations
 from collections.abc import Iterable
 from decimal import Decimal
 
-from ..errors import EvaluationStopped
-from ..evaluation.load_and_price import check_load_and_price
 from ..evaluation.lot_rates import derived_rates, lot_rates
 from ..evaluation.rate_study import Sensitivity, percent_above, sensitivities
 from ..evaluation.result import LotRates
@@ -37,15 +35,8 @@ def build_rates_report(tender: Tender) -> RatesReport:
     -------
     RatesReport
         For the terminal.
-
-    Raises
-    ------
-    EvaluationStopped
-        If loads and prices cannot be brought together.
     """
     currency = tender.identity.currency.value
-    if findings := check_load_and_price(tender):
-        raise EvaluationStopped(findings)
     used = {lot.id: lot_rates(tender, lot) for lot in tender.lots}
     studies = {lot.id: derived_rates(tender, lot, lot.study, "study") for lot in tender.lots if lot.study}
     return RatesReport(
