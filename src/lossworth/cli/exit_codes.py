@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import os
+from collections.abc import Sequence
 
 import click
 
@@ -11,13 +12,15 @@ __all__ = ["DONE", "FAILURE", "FINDINGS", "MISUSE", "run"]
 DONE, FINDINGS, MISUSE, FAILURE = 0, 1, 2, 3
 
 
-def run(command: click.Command) -> int:
+def run(command: click.Command, arguments: Sequence[str] | None = None) -> int:
     """Run a command and turn whatever happens into an exit code.
 
     Parameters
     ----------
     command : click.Command
         The group of all commands.
+    arguments : sequence of str, optional
+        Those of the process where left out.
 
     Returns
     -------
@@ -25,7 +28,7 @@ def run(command: click.Command) -> int:
         0 done, 1 findings stop the evaluation, 2 misuse, 3 failure.
     """
     try:
-        code = command.main(standalone_mode=False)
+        code = command.main(arguments, standalone_mode=False)
     except click.ClickException as error:
         error.show()
         return MISUSE
