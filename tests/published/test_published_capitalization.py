@@ -5,9 +5,6 @@ Inputs are written here as they stand in the sources; printed digits, sources an
 
 from __future__ import annotations
 
-import csv
-from pathlib import Path
-
 import numpy as np
 import pytest
 
@@ -15,6 +12,7 @@ from lossworth.capitalization.losses import efficiency_of_output, peak_efficienc
 from lossworth.capitalization.owning_cost import LossCosts, loss_costs, total_owning_cost
 from lossworth.capitalization.present_value import capital_recovery_factor, levelizing_factor
 from lossworth.capitalization.rates import Rates, loss_capitalization_rates
+from lossworth.regulations.table_file import table
 from support.check_values import Printed, check_value, check_values
 
 #: Rows that are about the reading and judging of bids, and are tested where that is done.
@@ -160,23 +158,14 @@ def test_efficiency_of_output__bird() -> None:
 
 # Source: Commission Regulation (EU) No 548/2014 as amended by Regulation (EU) 2019/1783, Annex I, Tables I.1, I.3a and
 # I.7. Read.
-EU_TABLES = Path(__file__).parent
-
-
-def eu_rows(name: str) -> list[dict[str, str]]:
-    """Rows of one of the regulation's tables."""
-    lines = (EU_TABLES / name).read_text(encoding="utf-8").splitlines()
-    return list(csv.DictReader(line for line in lines if not line.startswith("#")))
-
-
 def test_peak_efficiency_index__eu_table_7_from_table_1() -> None:
     """The 32 indices up to 3.15 MVA follow from the maximum losses with the factors of 36 kV."""
     printed = {
         (row["tier"], row["rated_power_kva"]): float(row["peak_efficiency_index_pct"])
-        for row in eu_rows("eu-548-2014-tables-I7-I9-peak-efficiency.csv")
+        for row in table("eu-548-2014-tables-I7-I9-peak-efficiency").rows
         if row["table"] == "I.7"
     }
-    losses = eu_rows("eu-548-2014-table-I1-liquid-medium.csv")
+    losses = table("eu-548-2014-table-I1-liquid-medium").rows
     assert len(losses) == 32
     for row in losses:
         computed = 100 * peak_efficiency_index(
