@@ -17,7 +17,7 @@ from __future__ import annotations
 
 import csv
 from functools import cache
-from pathlib import Path
+from importlib import resources
 
 import numpy as np
 import pytest
@@ -25,7 +25,7 @@ import pytest
 from lossworth.capitalization.losses import part_load_loss
 from support.power_flow import Array, Flow, Unit, flow, network
 
-PUBLISHED = Path(__file__).resolve().parents[1] / "published"
+TABLES = resources.files("lossworth.regulations") / "data"
 #: Current of the load over rated current.
 LOADS = [0.0, 0.1, 0.2, 0.3, 0.4, 0.5, 0.75, 1.0, 1.2]
 POWER_FACTORS = [1.0, 0.95, 0.9, 0.8]
@@ -37,7 +37,7 @@ LARGE = (4000, 6300, 10_000, 16_000, 31_500, 63_000, 100_000, 160_000)
 
 def published(name: str, **wanted: str) -> dict[int, dict[str, str]]:
     """Rows of a table of the regulation by rated power in kVA."""
-    lines = (PUBLISHED / name).read_text(encoding="utf-8").splitlines()
+    lines = (TABLES / name).read_text(encoding="utf-8").splitlines()
     rows = csv.DictReader(line for line in lines if not line.startswith("#"))
     return {int(row["rated_power_kva"]): row for row in rows if wanted.items() <= row.items()}
 
