@@ -157,7 +157,7 @@ def test_page__amount_opens_its_arithmetic(window: OpenedPage, view: EvaluationV
     line = page.locator("tr:target")
     line.wait_for(state="visible")
     assert line.locator("td.n").get_attribute("data-figure") == offer.per_unit.load_cost
-    assert "1,320.00 NCU/kW × 3.1 kW = 4,092.00 NCU" in line.inner_text()
+    assert "1,320.00 NCU/kW × 3.100 kW = 4,092.00 NCU" in line.inner_text()
     assert page.locator("details[open]").count() == 1
 
 
@@ -239,7 +239,7 @@ def test_paper__closed_arithmetic_is_printed_behind_the_lots(
     for figure in view.figures.values():
         if figure.operator in ("sum", "quotient"):
             assert _flat(figure.text) in whole
-    assert "1,320.00 NCU/kW × 3.1 kW = 4,092.00 NCU" in whole
+    assert "1,320.00 NCU/kW × 3.100 kW = 4,092.00 NCU" in whole
     assert "330 W ÷ 1,000 W/kW = 0.33 kW" in whole
     assert re.search(r"\b35 +0\.130105", whole)
 

@@ -22,7 +22,15 @@ from lossworth.report.view import (
 )
 from support.page_views import page_view
 
-__all__ = ["ASSUMPTION", "FORMULAS", "double_hump_year", "duration_points", "load_page_view", "load_view", "rates_report"]
+__all__ = [
+    "ASSUMPTION",
+    "FORMULAS",
+    "double_hump_year",
+    "duration_points",
+    "load_page_view",
+    "load_view",
+    "rates_report",
+]
 
 ASSUMPTION = (
     "load loss: brought from 20 MVA to 31.5 MVA by the square of the ratings, 54.0 kW × (31.5 / 20)² = 133.95 kW; "
@@ -63,7 +71,9 @@ def load_view(
     shape = load_duration(double_hump_year() if loads is None else list(loads))
     stages = tuple(
         CoolingStageView(
-            above, 100 / len(thresholds), tuple(float(shape.hours_above(above / peak)) if peak else 0.0 for peak in peaks)
+            above,
+            100 / len(thresholds),
+            tuple(float(shape.hours_above(above / peak)) if peak else 0.0 for peak in peaks),
         )
         for above in thresholds
     )

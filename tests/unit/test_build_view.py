@@ -77,7 +77,8 @@ def test_result_text__fields(view):
     """The data carry the documented fields, with amounts as decimal strings."""
     result = json.loads(result_text(view))
     lot = result["lots"][0]
-    assert lot["rates"] == {"A": "11000", "B": "660", "C": None, "unit": "NCU/kW", "basis": "announced"}
+    rates = {"A": "11000", "B": "660", "C": None, "unit": "NCU/kW", "basis": "announced"}
+    assert rates == {name: lot["rates"][name] for name in rates}
     first, _, cedar, damson = lot["offers"]
     assert first["total_owning_cost"] == "57600.00"
     assert first["per_unit"]["no_load_cost"] == "1100.00"

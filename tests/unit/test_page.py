@@ -3,10 +3,8 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Mapping
 from dataclasses import replace
 from decimal import Decimal
-from html.parser import HTMLParser
 from importlib.resources import files
 from itertools import pairwise
 
@@ -17,43 +15,11 @@ from lossworth.report import page
 from lossworth.report.formats import plain
 from lossworth.report.page import page_html
 from lossworth.report.view import CostView, EvaluationView, OfferView
+from support.html_reader import HtmlReader, shown_values
 from support.page_views import FORMULA_NAME, LONGEST_NAME, SCRIPT_NAME, page_view
 
-_VOID = {"meta", "link", "br", "col", "rect", "line", "circle"}
 _ARITHMETIC = re.compile(r"\w\s*[-+*/%]\s*\w")
 _LOADING = ("src", "srcset", "data", "poster", "action", "formaction", "background", "cite", "ping", "xlink:href")
-
-
-class _Reader(HTMLParser):
-    """Collects tags, attributes and text, and notices tags that are not closed in order."""
-
-    def __init__(self, html: str) -> None:
-        super().__init__(convert_charrefs=True)
-        self.tags: list[tuple[str, dict[str, str]]] = []
-        self.text: list[str] = []
-        self._open: list[str] = []
-        self.misplaced: list[str] = []
-        self.feed(html)
-        self.close()
-        self.misplaced += self._open
-
-    def handle_starttag(self, tag: str, attrs: list[tuple[str, str | None]]) -> None:
-        self.tags.append((tag, {name: value or "" for name, value in attrs}))
-        if tag not in _VOID:
-            self._open.append(tag)
-
-    def handle_startendtag(self, tag: str, attrs: list[tuple[str, str | None]]) -> None:
-        self.tags.append((tag, {name: value or "" for name, value in attrs}))
-
-    def handle_endtag(self, tag: str) -> None:
-        if not self._open or self._open.pop() != tag:
-            self.misplaced.append(tag)
-
-    def handle_data(self, data: str) -> None:
-        self.text.append(data)
-
-    def all_of(self, tag: str) -> list[dict[str, str]]:
-        return [attributes for name, attributes in self.tags if name == tag]
 
 
 @pytest.fixture(scope="module")
@@ -67,15 +33,8 @@ def html(view: EvaluationView) -> str:
 
 
 @pytest.fixture(scope="module")
-def reader(html: str) -> _Reader:
-    return _Reader(html)
-
-
-def shown_values(reader: _Reader) -> Mapping[str, str]:
-    """Figure id to plain value, as the page carries them; the same figure never with two values."""
-    pairs = {(a["data-figure"], a["data-value"]) for _, a in reader.tags if "data-figure" in a}
-    assert len(pairs) == len(dict(pairs))
-    return dict(pairs)
+def reader(html: str) -> HtmlReader:
+    return HtmlReader(html)
 
 
 def amounts(cost: CostView) -> list[str]:
@@ -88,12 +47,12 @@ def test_page_html__byte_identical_twice(html: str) -> None:
     assert page_html(page_view()).encode() == html.encode()
 
 
-def test_page_html__tags_are_closed_in_order(reader: _Reader) -> None:
+def test_page_html__tags_are_closed_in_order(reader: HtmlReader) -> None:
     """Hostile names cannot break the tree."""
     assert reader.misplaced == []
 
 
-def test_page_html__names_are_escaped(html: str, reader: _Reader) -> None:
+def test_page_html__names_are_escaped(html: str, reader: HtmlReader) -> None:
     """A name that is markup is shown as text, letter for letter."""
     assert reader.all_of("script") == []
     assert reader.all_of("b") == []
@@ -122,7 +81,7 @@ def test_page_html__style_sheet_holds_only_harmless_characters_of_the_remark(vie
     assert re.search(r'@top-left \{ content: "a(\\[0-9a-f]{6} |[A-Za-z0-9])+"; ', html)
 
 
-def test_page_html__nothing_from_outside(html: str, reader: _Reader) -> None:
+def test_page_html__nothing_from_outside(html: str, reader: HtmlReader) -> None:
     """No script, no handler, no address but places in the page itself and an empty icon."""
     assert {"script", "iframe", "object", "embed", "img", "form", "base"}.isdisjoint({tag for tag, _ in reader.tags})
     for tag, attributes in reader.tags:
@@ -135,13 +94,13 @@ def test_page_html__nothing_from_outside(html: str, reader: _Reader) -> None:
     assert "https://" not in html
 
 
-def test_page_html__content_security_policy_is_strict(reader: _Reader) -> None:
+def test_page_html__content_security_policy_is_strict(reader: HtmlReader) -> None:
     """The page forbids itself everything but its own styles and data images."""
     (policy,) = [m["content"] for m in reader.all_of("meta") if m.get("http-equiv") == "Content-Security-Policy"]
     assert policy.split("; ")[:3] == ["default-src 'none'", "style-src 'unsafe-inline'", "img-src data:"]
 
 
-def test_page_html__every_figure_of_each_offer_is_shown(view: EvaluationView, reader: _Reader) -> None:
+def test_page_html__every_figure_of_each_offer_is_shown(view: EvaluationView, reader: HtmlReader) -> None:
     """Amounts, losses, price, margin and rates of every offer stand in the page with their exact values."""
     shown = shown_values(reader)
     for lot in view.lots:
@@ -156,7 +115,7 @@ def test_page_html__every_figure_of_each_offer_is_shown(view: EvaluationView, re
 
 def test_page_html__every_figure_behind_an_amount_has_a_line(view: EvaluationView, html: str) -> None:
     """Nothing of the trail is left out: each figure has a line with its arithmetic or its source."""
-    text = " ".join("".join(_Reader(html).text).split())
+    text = " ".join("".join(HtmlReader(html).text).split())
     lines = set(re.findall(r'<td class="n" data-figure="(.*?)"', html))
     assert lines >= set(view.figures)
     for figure in view.figures.values():
@@ -175,14 +134,14 @@ def test_page_html__operands_stand_before_results(view: EvaluationView, html: st
             assert set(view.figures[key].operands).isdisjoint(keys[place:])
 
 
-def test_page_html__links_lead_to_lines_that_exist(reader: _Reader) -> None:
+def test_page_html__links_lead_to_lines_that_exist(reader: HtmlReader) -> None:
     """Every place named in a link is there once."""
     places = [attributes["id"] for _, attributes in reader.tags if "id" in attributes]
     assert len(places) == len(set(places))
     assert {a["href"][1:] for a in reader.all_of("a")} <= set(places)
 
 
-def test_page_html__ties_are_shown_as_ties(reader: _Reader) -> None:
+def test_page_html__ties_are_shown_as_ties(reader: HtmlReader) -> None:
     """Both first offers carry the rank of a tie, and the next rank is skipped."""
     text = [part.strip() for part in reader.text]
     ranks = [part for part in text if re.fullmatch(r"\d( =)?", part)]
@@ -193,7 +152,7 @@ def test_page_html__ties_are_shown_as_ties(reader: _Reader) -> None:
 
 def test_page_html__unranked_offers_stand_apart_with_reasons(view: EvaluationView, html: str) -> None:
     """Reasons are printed, the amounts are marked as not ranked, and no picture shows them."""
-    reader = _Reader(html)
+    reader = HtmlReader(html)
     text = "".join(reader.text)
     left_out = [offer for lot in view.lots for offer in lot.offers if offer.status != "ranked"]
     assert len(left_out) == 2
@@ -205,14 +164,14 @@ def test_page_html__unranked_offers_stand_apart_with_reasons(view: EvaluationVie
     assert "Cedarfell" not in pictures
 
 
-def test_page_html__price_and_cost_are_not_confused(reader: _Reader) -> None:
+def test_page_html__price_and_cost_are_not_confused(reader: HtmlReader) -> None:
     """The page says what is paid, and names the column of the price."""
     text = "".join(reader.text)
     assert "The contract pays the price that the bidder quotes." in text
     assert "Evaluated price" in text
 
 
-def test_page_html__headings_in_order(reader: _Reader) -> None:
+def test_page_html__headings_in_order(reader: HtmlReader) -> None:
     """One h1, and no level is skipped."""
     levels = [int(tag[1]) for tag, _ in reader.tags if re.fullmatch(r"h[1-6]", tag)]
     assert levels[0] == 1
@@ -220,7 +179,7 @@ def test_page_html__headings_in_order(reader: _Reader) -> None:
     assert all(after - before <= 1 for before, after in pairwise(levels))
 
 
-def test_page_html__tables_pictures_and_language_are_accessible(html: str, reader: _Reader) -> None:
+def test_page_html__tables_pictures_and_language_are_accessible(html: str, reader: HtmlReader) -> None:
     """Tables have captions and scoped headers, pictures a title and a description, the page a language and a title."""
     assert reader.all_of("html") == [{"lang": "en"}]
     assert len(reader.all_of("table")) == len(reader.all_of("caption"))
@@ -246,7 +205,7 @@ def test_page_html__lot_without_ranking(view: EvaluationView) -> None:
     lot = view.lots[0]
     left_out = tuple(offer for offer in lot.offers if offer.status != "ranked")
     html = page_html(replace(view, lots=(replace(lot, offers=left_out), replace(lot, offers=(), id="9"))))
-    assert _Reader(html).misplaced == []
+    assert HtmlReader(html).misplaced == []
     assert html.count("No offer can be ranked.") == 2
     assert 'class="ranking"' not in html
     assert 'class="bars"' not in html

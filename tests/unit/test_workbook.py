@@ -27,6 +27,7 @@ SHEETS = [
     "Rates by year",
     "Inputs",
     "Bids",
+    "Information",
     "Findings",
     "Comparison",
     "Record",

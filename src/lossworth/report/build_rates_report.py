@@ -55,11 +55,11 @@ def _lot(tender: Tender, lot: Lot, used: LotRates, study: LotRates | None) -> Lo
         sources = derivation_sources(
             tender, lot.study, "Study beside the announced rates, never part of the evaluation"
         )
-        study_view = rates_view(study, sources, currency)
+        study_view = rates_view(study, lot, sources, currency)
     return LotRatesView(
         id=lot.id,
         description=one_line(lot.description.value),
-        used=rates_view(used, rate_sources(tender, lot), currency),
+        used=rates_view(used, lot, rate_sources(tender, lot), currency),
         study=study_view,
         comparison=() if study is None else tuple(_comparison(used, study, currency)),
         sensitivity=tuple(_row(found, study or used, currency) for found in sensitivities(study or used)),

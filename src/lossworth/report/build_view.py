@@ -22,7 +22,7 @@ from ..evaluation.result import (
 from ..findings import KINDS, Effect, Finding, one_line
 from ..records.bid import Offer
 from ..records.quantity import Quantity
-from ..records.tender import Tender
+from ..records.tender import Lot, Tender
 from ..trail import Figure
 from .figure_text import shown_figures
 from .formats import as_stated
@@ -155,16 +155,18 @@ def _lot(tender: Tender, lot: LotEvaluation, evaluation: Evaluation) -> LotView:
 
 
 def _rates(tender: Tender, lot: LotEvaluation) -> RatesView:
-    return rates_view(lot.rates, rate_sources(tender, lot.lot), tender.identity.currency.value)
+    return rates_view(lot.rates, lot.lot, rate_sources(tender, lot.lot), tender.identity.currency.value)
 
 
-def rates_view(rates: LotRates, sources: tuple[str, ...], currency: str) -> RatesView:
+def rates_view(rates: LotRates, lot: Lot, sources: tuple[str, ...], currency: str) -> RatesView:
     """Rates of a lot, as ids of their figures, with their year table.
 
     Parameters
     ----------
     rates : LotRates
         Announced or derived.
+    lot : Lot
+        Whose losses they value.
     sources : tuple of str
         Where they come from, in sentences.
     currency : str
@@ -184,7 +186,7 @@ def rates_view(rates: LotRates, sources: tuple[str, ...], currency: str) -> Rate
         sources=sources,
         year_table=None if rates.table is None else _year_table(rates.table, currency),
         method=rates.method,
-        formulas=formulas(rates),
+        formulas=formulas(rates, lot),
         load_profile=None if rates.load_facts is None else _load_profile(rates.load_facts),
     )
 
@@ -195,7 +197,7 @@ def _load_profile(facts: LoadFacts) -> LoadView:
         "loss_factor_by_time": "loss factor, by time",
         "loss_factor": "loss factor, by price" if "loss_factor_by_time" in facts.figures else "loss factor",
     }
-    shown = [Fact(labels[name], as_stated(figure.value), "", figure.value) for name, figure in facts.figures.items()]
+    shown = [Fact(labels[name], _places(figure.value, 4), "", figure.value) for name, figure in facts.figures.items()]
     by_time = facts.figures.get("loss_factor_by_time")
     if by_time is not None:
         more = (100 * (facts.figures["loss_factor"].value / by_time.value - 1)).quantize(Decimal("0.01"))
@@ -211,6 +213,10 @@ def _load_profile(facts: LoadFacts) -> LoadView:
             CoolingStageView(stage.above_load_pu, 100 * stage.share, stage.hours_by_year) for stage in facts.stages
         ),
     )
+
+
+def _places(value: Decimal, places: int) -> str:
+    return as_stated(value.quantize(Decimal(1).scaleb(-places), rounding=ROUND_HALF_UP))
 
 
 def _implied_coefficient(facts: LoadFacts) -> list[Fact]:

@@ -3,15 +3,18 @@
 from __future__ import annotations
 
 import json
+from collections.abc import Iterable
 from decimal import Decimal
 from typing import Any
 
 from .formats import plain
-from .view import CostView, EvaluationView, LotView, MarginView, OfferView
+from .view import CostView, EvaluationView, Fact, LoadView, LotView, MarginView, OfferView, YearTableView
 
 __all__ = ["FORMAT_VERSION", "result_text"]
 
 FORMAT_VERSION = 1
+#: Of numbers that never were money: the last bits of a float differ between processors.
+_SIGNIFICANT_DIGITS = 12
 
 
 def result_text(view: EvaluationView) -> str:
@@ -26,6 +29,14 @@ def result_text(view: EvaluationView) -> str:
     -------
     str
         UTF-8 text with a final newline; amounts are decimal strings, so that no reader loses a cent.
+
+    Notes
+    -----
+    Under ``lots[].rates``: ``A``, ``B``, ``C``, ``unit``, ``basis``, ``method``, ``formulas``, ``year_table``
+    {``columns[]``: ``name``, ``heading``, ``unit``, ``values``} and ``load_profile`` {``file``, ``remarks``,
+    ``facts[]``, ``peak_load_by_year_pu``, ``cooling_stages[]``: ``above_load_pu``, ``share_percent``,
+    ``hours_by_year``}; the last two are null where there is none. Their numbers have twelve significant digits. Under
+    ``lots[].offers[]``, beside the costs: ``assumptions`` and ``information[]`` {``label``, ``value``, ``unit``}.
     """
     content = {
         "format_version": FORMAT_VERSION,
@@ -77,10 +88,52 @@ def _lot(view: EvaluationView, lot: LotView) -> dict[str, Any]:
             "C": _value(view, rates.auxiliary),
             "unit": rates.unit,
             "basis": rates.basis,
+            "method": rates.method or None,
+            "formulas": list(rates.formulas),
+            "year_table": None if rates.year_table is None else _year_table(rates.year_table),
+            "load_profile": None if rates.load_profile is None else _load_profile(rates.load_profile),
         },
         "recommendation": lot.recommendation,
         "offers": [_offer(view, offer) for offer in lot.offers],
     }
+
+
+def _year_table(table: YearTableView) -> dict[str, Any]:
+    return {
+        "columns": [
+            {"name": column.name, "heading": column.heading, "unit": column.unit, "values": _numbers(column.values)}
+            for column in table.columns
+        ]
+    }
+
+
+def _load_profile(load: LoadView) -> dict[str, Any]:
+    return {
+        "file": load.file,
+        "remarks": list(load.remarks),
+        "facts": _facts(load.facts),
+        "peak_load_by_year_pu": _numbers(load.peak_load_by_year_pu),
+        "cooling_stages": [
+            {
+                "above_load_pu": _number(stage.above_load_pu),
+                "share_percent": _number(stage.share_percent),
+                "hours_by_year": _numbers(stage.hours_by_year),
+            }
+            for stage in load.stages
+        ],
+    }
+
+
+def _facts(facts: Iterable[Fact]) -> list[dict[str, str]]:
+    return [{"label": fact.label, "value": plain(fact.value), "unit": fact.unit} for fact in facts]
+
+
+def _numbers(values: Iterable[float]) -> list[int | float]:
+    return [_number(value) for value in values]
+
+
+def _number(value: float) -> int | float:
+    return int(value) if value.is_integer() else float(f"{value:.{_SIGNIFICANT_DIGITS}g}")
 
 
 def _offer(view: EvaluationView, offer: OfferView) -> dict[str, Any]:
@@ -95,6 +148,8 @@ def _offer(view: EvaluationView, offer: OfferView) -> dict[str, Any]:
             {"name": item.name, "text": item.text, "unit": item.unit, "place": item.place} for item in offer.particulars
         ],
         "reasons": list(offer.reasons),
+        "assumptions": list(offer.assumptions),
+        "information": _facts(offer.information),
     }
 
 

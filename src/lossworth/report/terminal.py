@@ -3,19 +3,45 @@
 from __future__ import annotations
 
 import io
-from collections.abc import Iterable
+from collections.abc import Iterable, Iterator, Sequence
+from dataclasses import dataclass
 from decimal import Decimal
 
 from rich import box
 from rich.console import Console
+from rich.padding import Padding
 from rich.table import Table
 from rich.text import Text
 
 from .formats import amount, percent
-from .view import EvaluationView, LotView, OfferView, RatesReport, RatesView, ShownFigure, YearTableView
+from .view import (
+    EvaluationView,
+    Fact,
+    LoadView,
+    LotView,
+    OfferView,
+    RatesReport,
+    RatesView,
+    SensitivityRow,
+    ShownFigure,
+    YearColumn,
+    YearTableView,
+)
 
 __all__ = ["evaluation_text", "rates_text"]
 
+#: Digits behind the decimal mark in the columns of a year table; money where a column is not named.
+_YEAR_PLACES = {
+    "year": 0,
+    "discount_factor": 6,
+    "energy_price_per_kwh": 5,
+    "carbon_cost_per_kwh": 5,
+    "peak_load_pu": 5,
+    "cooling_hours": 1,
+    "cooling_share_at_peak": 3,
+}
+#: Columns of the terminal between two columns of a table.
+_GAP = 3
 _COST_COLUMNS = (
     ("evaluated\nprice", "evaluated_price"),
     ("no-load\nloss", "no_load_cost"),
@@ -85,7 +111,15 @@ def rates_text(report: RatesReport, width: int, *, years: bool = False, color: b
         console.print(_text(f"Lot {lot.id} · {lot.description}", "bold"))
         _print_rates(console, report, lot.used, years=years)
         if lot.study is not None:
+            console.print()
             _print_rates(console, report, lot.study, years=years)
+        for sentence in lot.comparison:
+            console.print(_text(sentence, "bold"))
+        if lot.sensitivity:
+            console.print(
+                _text(f"What a change of one input does to the rates, in {lot.used.unit} (exact derivatives):")
+            )
+            console.print(_sensitivity(lot.sensitivity))
     return _captured(console)
 
 
@@ -156,13 +190,61 @@ def _amount(view: EvaluationView, figure: str | None) -> str:
 def _print_rates(console: Console, report: RatesReport, rates: RatesView, *, years: bool) -> None:
     for source in rates.sources:
         console.print(_text(source))
+    if rates.method:
+        console.print(_text(f"Method: {rates.method}"))
+    for formula in rates.formulas:
+        console.print(Padding(_text(formula), (0, 0, 0, 2)))
     for name, identity in (("A", rates.no_load), ("B", rates.load), ("C", rates.auxiliary)):
         if identity is not None:
             figure = report.figures[identity]
             console.print(_text(f"  {name} = {figure.text} {rates.unit}"))
     console.print(_arithmetic(_behind(report, rates)))
+    if rates.load_profile is not None:
+        _print_load(console, rates.load_profile)
     if years and rates.year_table is not None:
-        console.print(_years(rates.year_table))
+        for table in _years(rates.year_table, console.width):
+            console.print(table)
+
+
+def _print_load(console: Console, load: LoadView) -> None:
+    console.print(_text(f"Load from {load.file}"))
+    console.print(_two_columns((f"  {fact.label}", _with_unit(fact)) for fact in load.facts))
+    last = len(load.peak_load_by_year_pu)
+    for stage in load.stages:
+        first, final = (f"{hours:,.0f} h" for hours in (stage.hours_by_year[0], stage.hours_by_year[-1]))
+        ran = f"{first} in year 1, {final} in year {last}"
+        share = f"{stage.share_percent:.4g} % of the auxiliary loss"
+        text = f"cooling above {stage.above_load_pu:.4g} per unit ({share}): {ran}"
+        console.print(Padding(_text(text), (0, 0, 0, 2)))
+    for remark in load.remarks:
+        console.print(Padding(_text(remark, "dim"), (0, 0, 0, 2)))
+
+
+def _with_unit(fact: Fact) -> str:
+    return fact.text if fact.unit in ("", "1") else f"{fact.text} {fact.unit}"
+
+
+def _sensitivity(rows: Iterable[SensitivityRow]) -> Table:
+    """Rates across, inputs down; a column only for a rate that some input moves."""
+    rows = tuple(rows)
+    rates = [name for name in ("a", "b", "c") if any(getattr(row, name) is not None for row in rows)]
+    table = Table(box=box.SIMPLE_HEAD, pad_edge=False, show_edge=False, header_style="dim")
+    table.add_column("input", overflow="fold", min_width=12)
+    table.add_column("now", justify="right", overflow="fold")
+    table.add_column("change", justify="right", overflow="fold")
+    for name in rates:
+        table.add_column(name.upper(), justify="right", no_wrap=True)
+    for row in rows:
+        now = row.value if row.unit in ("", "1") else f"{row.value} {row.unit}"
+        table.add_row(_text(row.input), _text(now), _text(row.change), *(_change(getattr(row, name)) for name in rates))
+    return table
+
+
+def _change(value: float | None) -> Text:
+    if value is None:
+        return _text("–", "dim")
+    text = amount(Decimal(repr(value)))
+    return _text(f"+{text}" if value > 0 else text)
 
 
 def _behind(report: RatesReport, rates: RatesView) -> Iterable[ShownFigure]:
@@ -178,26 +260,50 @@ def _behind(report: RatesReport, rates: RatesView) -> Iterable[ShownFigure]:
 
 
 def _arithmetic(figures: Iterable[ShownFigure]) -> Table:
+    return _two_columns((f"  {figure.label}", figure.arithmetic) for figure in figures)
+
+
+def _two_columns(lines: Iterable[tuple[str, str]]) -> Table:
     table = Table(box=None, pad_edge=False, show_header=False, padding=(0, 2, 0, 0))
     table.add_column(style="dim", overflow="fold", ratio=2)
     table.add_column(overflow="fold", ratio=5)
-    for figure in figures:
-        table.add_row(_text(f"  {figure.label}"), _text(figure.arithmetic))
+    for left, right in lines:
+        table.add_row(_text(left), _text(right))
     return table
 
 
-def _years(years: YearTableView) -> Table:
+@dataclass(frozen=True, slots=True)
+class _YearColumn:
+    """A column of a year table as text, and the width below which something of it would be cut off."""
+
+    heading: str
+    cells: tuple[str, ...]
+    width: int
+
+
+def _years(years: YearTableView, width: int) -> Iterator[Table]:
+    """The year table, in as many tables below each other as the width demands."""
+    first, *columns = (_year_column(column) for column in years.columns)
+    block = [first]
+    for column in columns:
+        if sum(c.width + _GAP for c in (*block, column)) > width and len(block) > 1:
+            yield _year_block(block)
+            block = [first]
+        block.append(column)
+    yield _year_block(block)
+
+
+def _year_column(column: YearColumn) -> _YearColumn:
+    unit = "" if column.unit == "1" else f"\n{column.unit}"
+    heading = column.heading.replace(", ", ",\n") + unit
+    cells = tuple(f"{value:,.{_YEAR_PLACES.get(column.name, 2)}f}" for value in column.values)
+    return _YearColumn(heading, cells, max(len(text) for text in (*heading.split(), *cells)))
+
+
+def _year_block(columns: Sequence[_YearColumn]) -> Table:
     table = Table(box=box.SIMPLE_HEAD, pad_edge=False, show_edge=False, header_style="dim")
-    for column in years.columns:
-        unit = "" if column.unit == "1" else f"\n{column.unit}"
-        table.add_column(column.heading.replace(", ", ",\n") + unit, justify="right")
-    for row in zip(*(column.values for column in years.columns), strict=True):
-        table.add_row(
-            f"{row[0]:.0f}",
-            f"{row[1]:.6f}",
-            f"{row[2]:.5f}",
-            f"{row[3]:.2f}",
-            f"{row[4]:.5f}",
-            *(f"{value:,.2f}" for value in row[5:]),
-        )
+    for column in columns:
+        table.add_column(column.heading, justify="right", min_width=column.width)
+    for row in zip(*(column.cells for column in columns), strict=True):
+        table.add_row(*row)
     return table

@@ -5,7 +5,7 @@ from __future__ import annotations
 from ..evaluation.result import LotEvaluation, LotRates
 from ..findings import one_line
 from ..records.quantity import Entry
-from ..records.tender import Derivation, Lot, Tender
+from ..records.tender import CoolingValuation, Derivation, Lot, Tender
 from .formats import amount, as_stated, percent
 
 __all__ = [
@@ -147,23 +147,39 @@ _FIXED_CHARGE_RATE = (
     "charge rate, which is not the capital recovery factor in general.",
     "Form: annual cost of losses over the fixed charge rate, as in IEEE C57.120 (from memory).",
 )
+_THROUGH_A_AND_B = (
+    "Cost = evaluated price + A × (P0 + Pc0) + B × (Pk + Pcs − Pc0); no rate C acts.",
+    "Pc0 cooling power at no load, Pcs at rated load. Form: two stages of cooling as in IEC TS 60076-20 (from memory).",
+)
+_DATES = (
+    "Stated prices escalate from the price date to the service date before year 1; DF_t is also times (1 + r)^−(years "
+    "from the price date) where present values are taken at the price date."
+)
+_CARBON = "The carbon cost is the same in every hour: it counts with the loss factor and the cooling hours by time."
 _FORMULAS = {"present worth": _PRESENT_WORTH, "fixed charge rate": _FIXED_CHARGE_RATE}
 
 
-def formulas(rates: LotRates) -> tuple[str, ...]:
-    """Formulas of the method by which rates were derived, with their source.
+def formulas(rates: LotRates, lot: Lot) -> tuple[str, ...]:
+    """Formulas by which rates were derived and losses are valued, with their source.
 
     Parameters
     ----------
     rates : LotRates
         Announced or derived.
+    lot : Lot
+        For the way in which cooling is valued.
 
     Returns
     -------
     tuple of str
-        A line each; none for announced rates.
+        A line each; none for announced rates with a rate C of their own.
     """
-    return _FORMULAS.get(rates.method, ())
+    lines = _FORMULAS.get(rates.method, ())
+    if "price_delay_years" in rates.inputs and rates.inputs["price_delay_years"].value:
+        lines = (*lines, _DATES)
+    if "carbon_cost_per_kwh" in rates.inputs and "loss_factor_by_time" in rates.inputs:
+        lines = (*lines, _CARBON)
+    return (*lines, *_THROUGH_A_AND_B) if lot.cooling_valuation is CoolingValuation.THROUGH_A_AND_B else lines
 
 
 def derivation_sources(tender: Tender, derivation: Derivation, opening: str) -> tuple[str, ...]:

@@ -11,6 +11,7 @@ from .view import EvaluationView
 from .workbook_bids import BIDS, write_bids
 from .workbook_cells import Addresses
 from .workbook_evaluation import EVALUATION, write_evaluation
+from .workbook_information import INFORMATION, has_information, write_information
 from .workbook_inputs import INPUTS, write_inputs
 from .workbook_look import FONT, Look
 from .workbook_ranking import RANKING, write_ranking
@@ -52,7 +53,7 @@ def workbook_bytes(view: EvaluationView) -> bytes:
     -----
     Each figure of the trail has one cell: leaves are values, arithmetic is a formula in references to the cells of its
     operands, and the sum of a year table adds up the table's column. The arithmetic is therefore the engine's own and
-    is not written a second time, apart from the columns of the year table, whose formulas stand in `workbook_years`.
+    is not written a second time, apart from the columns of the year table: `workbook_year_formulas`.
     """
     memory = io.BytesIO()
     file = xlsxwriter.Workbook(memory, _options())
@@ -66,6 +67,8 @@ def workbook_bytes(view: EvaluationView) -> bytes:
     cells = write_evaluation(book)
     rankings = write_ranking(book, cells)
     verdict = write_comparison(book, cells)
+    if has_information(view):
+        write_information(book)
     write_findings(book)
     write_record(book)
     write_summary(book, rankings, verdict)
@@ -87,7 +90,8 @@ def _options() -> dict[str, object]:
 def _sheets(view: EvaluationView) -> tuple[str, ...]:
     derived = any(lot.rates.year_table is not None for lot in view.lots)
     years = (YEARS,) if derived else ()
-    return (SUMMARY, RANKING, EVALUATION, RATES, *years, INPUTS, BIDS, FINDINGS, COMPARISON, RECORD)
+    beside = (INFORMATION,) if has_information(view) else ()
+    return (SUMMARY, RANKING, EVALUATION, RATES, *years, INPUTS, BIDS, *beside, FINDINGS, COMPARISON, RECORD)
 
 
 def _properties(view: EvaluationView) -> dict[str, object]:

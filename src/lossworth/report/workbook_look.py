@@ -80,6 +80,7 @@ _STYLES: Mapping[str, Mapping[str, Any]] = {
     },
     "paragraph": {"text_wrap": True, "valign": "vcenter", "align": "left", "indent": 1},
     "quiet paragraph": {"text_wrap": True, "align": "left", "indent": 1, "font_color": MUTED},
+    "assumption": {"text_wrap": True, "align": "left", "indent": 1, "font_color": _COPPER, "bold": True},
     "lead": {"text_wrap": True, "font_size": 13, "bold": True},
     "text": _WORDS,
     "strong text": {**_WORDS, "bold": True},

@@ -10,6 +10,7 @@ from .view import EvaluationView, LotView, OfferView
 from .workbook_cells import column_name
 from .workbook_chart import insert_chart
 from .workbook_evaluation import AMOUNTS, LotCells, bidder_width, money_width
+from .workbook_information import assuming
 from .workbook_look import decimals_of
 from .workbook_sheet import NOTHING, Book, Column, Sheet
 
@@ -77,6 +78,8 @@ def write_ranking(book: Book, cells: Mapping[str, LotCells]) -> dict[str, LotRan
         sheet.paragraph(f"Lot {lot.id} · {lot.description} · {lot.quantity:,} units", "band")
         rankings[lot.id] = _ranked(book, sheet, lot, cells[lot.id])
         _not_ranked(sheet, lot)
+        if assuming(lot):
+            sheet.paragraph(assuming(lot), "assumption")
         if rankings[lot.id].count:
             insert_chart(sheet, lot, rankings[lot.id].row, rankings[lot.id].count, _LABEL, _PRICE)
     sheet.finish()

@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from decimal import Decimal
 
 from .view import LotView, OfferView
+from .workbook_information import assuming
 from .workbook_ranking import LotRanking
 from .workbook_record import AGREE
 from .workbook_sheet import NOTHING, Book, Column, Sheet
@@ -59,6 +60,8 @@ def write_summary(book: Book, rankings: Mapping[str, LotRanking], verdict: str) 
     sheet.row += 1
     for lot in view.lots:
         sheet.paragraph(f"Lot {lot.id}: {lot.recommendation}")
+        if assuming(lot):
+            sheet.paragraph(assuming(lot), "assumption")
     sheet.row += 1
     sheet.paragraph("Cautions", "part")
     for caution in view.cautions:
