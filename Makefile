@@ -12,7 +12,7 @@ WORKERS ?= 2
 BIN := .venv/bin
 SCRIPTS := sample_bids/make_sample_bids.py benchmarks/help_time.py benchmarks/rates_speed.py \
 	benchmarks/cooling_speed.py docs/make_findings.py docs/make_pictures.py \
-	docs/make_load_profile_table.py tests/wheel_check.py
+	docs/make_load_profile_table.py docs/example_power_tender/make_profile.py tests/wheel_check.py
 
 export PIP_DISABLE_PIP_VERSION_CHECK := 1
 export PIP_ROOT_USER_ACTION := ignore

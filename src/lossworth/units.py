@@ -5,10 +5,12 @@ from __future__ import annotations
 from decimal import Decimal
 
 __all__ = [
+    "ENERGY_UNITS",
     "LOSS_UNITS",
     "PERCENT_UNITS",
     "RATED_POWER_UNITS",
     "RATE_BASES",
+    "TEMPERATURE_UNITS",
     "WEEK_UNITS",
     "factor",
 ]
@@ -19,10 +21,14 @@ LOSS_UNITS = {"kW": Decimal(1), "W": Decimal("0.001"), "MW": Decimal(1000)}
 RATED_POWER_UNITS = {"kVA": Decimal(1), "MVA": Decimal(1000), "VA": Decimal("0.001")}
 #: Loss capitalization rates: what a rate is quoted per, and the factor to a rate per kW.
 RATE_BASES = {"kW": Decimal(1), "W": Decimal(1000), "0.1 kW": Decimal(10)}
+#: Energy: factor to kWh; a price per unit of energy is divided by it.
+ENERGY_UNITS = {"kWh": Decimal(1), "MWh": Decimal(1000)}
 #: Impedance and efficiency: factor to percent.
 PERCENT_UNITS = {"%": Decimal(1), "pu": Decimal(100)}
 #: Delivery: factor to weeks.
 WEEK_UNITS = {"weeks": Decimal(1)}
+#: Temperatures.
+TEMPERATURE_UNITS = {"°C": Decimal(1)}
 
 
 def factor(unit: str, units: dict[str, Decimal]) -> Decimal:

@@ -36,14 +36,14 @@ evidence = "Invented record"
 
 [exchange.rates]
 FCU = 1.25
-
 [economics.board]
 energy_price_per_kwh = 0.08
 demand_charge_per_kw_year = 50
 discount_rate_percent = 6
 evaluation_period_years = 30
 timing = "end of year"
-
+price_terms = "real"
+discount_rate_terms = "real"
 [loading.town]
 load_factor = 0.5
 loss_factor_coefficient = 0.15
@@ -166,11 +166,17 @@ def with_sheet_xml(data: bytes, old: str, new: str) -> bytes:
 
 
 def write_folder(
-    folder: Path, *, tender: str | bytes | None = TENDER, bids: Mapping[str, str | bytes] | None = None
+    folder: Path,
+    *,
+    tender: str | bytes | None = TENDER,
+    bids: Mapping[str, str | bytes] | None = None,
+    more: Mapping[str, str | bytes] | None = None,
 ) -> Path:
-    """Write a tender folder; without bids it has one csv file of the rows above."""
+    """Write a tender folder; without bids it has one csv file of the rows above, with others where there are more."""
     folder.mkdir(parents=True, exist_ok=True)
-    files = {} if tender is None else {"tender.toml": tender}
+    files = dict(more or {})
+    if tender is not None:
+        files["tender.toml"] = tender
     files |= {
         f"bids/{name}": content for name, content in ({"offers.csv": csv_text()} if bids is None else bids).items()
     }

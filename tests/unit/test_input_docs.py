@@ -31,16 +31,17 @@ def sections(page: str) -> dict[str, str]:
 @pytest.mark.parametrize("table", TABLES)
 def test_tender_file_page__every_key(table: str) -> None:
     """Every key stands in the section of its table, with the words it allows, and no other key has a row there."""
-    heading = {"economics": "economics.NAME", "loading": "loading.NAME"}.get(table, table)
+    outer, _, inner_name = table.partition(".")
+    heading = f"{outer}.NAME.{inner_name}".rstrip(".") if outer in ("economics", "loading") else table
     if table == "lot.study":
         return  # the page refers to the keys of the derivation
     section = sections(text_of("docs/tender_file.md"))[heading]
     rows = set(re.findall(r"^\| `(\w+)`", section, re.MULTILINE))
-    inner = {"decimal_mark_of", "rates"}
+    inner = {"decimal_mark_of", "rates", "profile_day_weights"}
     names = {key.name for key in TABLES[table]}
     assert rows - inner <= names
     for key in TABLES[table]:
-        assert f"`{key.name}`" in section
+        assert f"`{key.name}`" in section, key.name
         for word in key.words:
             assert f'`"{word}"`' in section
 
@@ -83,14 +84,16 @@ def test_starter__explains_every_key() -> None:
     for keys in TABLES.values():
         for key in keys:
             assert re.search(rf"^(?:# )?{key.name} = .+", text, re.MULTILINE) or f"or {key.name}" in text, key.name
-    for table in ("exchange.rates", "bids.decimal_mark_of"):
+    inside = ("economics.network.block", "loading.substation.cooling_stage", "lot.loss_basis")
+    for table in ("exchange.rates", "bids.decimal_mark_of", *inside):
         assert f"[{table}]" in text
+    assert "# profile_day_weights = {" in text
 
 
 def test_starter__commented_keys_are_known() -> None:
     """A key behind a comment sign is one of the format, so that taking the sign away works."""
     text = (STARTER / "tender.toml").read_text(encoding="utf-8")
-    known = {key.name for keys in TABLES.values() for key in keys}
+    known = {key.name for keys in TABLES.values() for key in keys} | {"profile_day_weights"}
     assert set(re.findall(r"^# (\w+) = ", text, re.MULTILINE)) <= known
 
 

@@ -21,6 +21,8 @@ energy_price_per_kwh = 1
 discount_rate_percent = 6
 evaluation_period_years = 1
 timing = "mid-year"
+price_terms = "nominal"
+discount_rate_terms = "nominal"
 """
 
 
@@ -124,7 +126,7 @@ def test_read_tender__prices_by_year(tmp_path: Path) -> None:
     prices = "energy_price_by_year_per_kwh = [\n" + "0.08,\n" * 30 + "]"
     economics = valid_tender(tmp_path, changed("energy_price_per_kwh = 0.08", prices)).economics["board"]
     assert economics.energy_price_by_year_per_kwh is not None
-    assert [price.place.line for price in economics.energy_price_by_year_per_kwh] == list(range(25, 55))
+    assert [price.place.line for price in economics.energy_price_by_year_per_kwh] == list(range(24, 54))
 
 
 def test_read_tender__byte_order_mark_and_windows_lines(tmp_path: Path) -> None:

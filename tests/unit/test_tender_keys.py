@@ -2,34 +2,54 @@
 
 from __future__ import annotations
 
-from lossworth.intake.tender_keys import TABLES, Reads
+from enum import StrEnum
+from typing import Any, Literal, get_args, get_origin
+
+from lossworth.intake.tender_keys import INSIDE, TABLES
 from lossworth.records import tender as records
+from lossworth.records.profile import PriceBlock
+from lossworth.records.quantity import Record
+
+OF_TABLE: dict[str, type[Record]] = {
+    "tender": records.Identity,
+    "bids": records.BidFileRules,
+    "exchange": records.Exchange,
+    "economics": records.Economics,
+    "economics.block": PriceBlock,
+    "loading": records.LoadingCondition,
+    "loading.cooling_stage": records.CoolingStage,
+    "lot": records.Lot,
+    "lot.rates": records.AnnouncedRates,
+    "lot.derivation": records.Derivation,
+    "lot.study": records.Derivation,
+    "lot.loss_basis": records.LossBasis,
+}
 
 
 def test_tables__fill_the_records() -> None:
     """Every key fills a field of the record, and every field that the record requires has a key."""
-    of_table = {
-        "tender": records.Identity,
-        "bids": records.BidFileRules,
-        "exchange": records.Exchange,
-        "economics": records.Economics,
-        "loading": records.LoadingCondition,
-        "lot": records.Lot,
-        "lot.rates": records.AnnouncedRates,
-        "lot.derivation": records.Derivation,
-        "lot.study": records.Derivation,
-    }
-    for table, record in of_table.items():
-        filled = {key.fills for key in TABLES[table]}
+    for table, record in OF_TABLE.items():
+        filled = {key.fills for key in TABLES[table] if not key.for_reading}
+        filled |= {inside.field for inside in INSIDE.get(table, ()) if inside.field}
         required = {name for name, field in record.model_fields.items() if field.is_required()}
         assert filled <= set(record.model_fields), table
         assert required - {"place", "rates"} <= filled, table
 
 
+def words_of(annotation: Any) -> tuple[str, ...]:
+    """Texts that a field of a record takes: of a literal or an enumeration, also where it may be absent or a list."""
+    if isinstance(annotation, type) and issubclass(annotation, StrEnum):
+        return tuple(annotation)
+    inner = [part for part in get_args(annotation) if part not in (type(None), Ellipsis)]
+    return tuple(inner) if get_origin(annotation) is Literal else words_of(inner[0])
+
+
 def test_tables__words_are_those_of_the_records() -> None:
     """The words that a key allows are those that the record allows."""
-    words = {key.name: key.words for keys in TABLES.values() for key in keys if key.reads is Reads.WORD}
-    for record in (records.BidFileRules, records.AnnouncedRates):
-        for name, field in record.model_fields.items():
-            if name in words:
-                assert words[name] == field.annotation.__args__  # type: ignore[union-attr]
+    compared = 0
+    for table, record in OF_TABLE.items():
+        for key in TABLES[table]:
+            if key.words and not key.for_reading:
+                assert key.words == words_of(record.model_fields[key.fills].annotation), key.name
+                compared += 1
+    assert compared >= 12

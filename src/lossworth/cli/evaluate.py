@@ -51,6 +51,7 @@ def evaluate(tender: Path, bids: tuple[Path, ...], papers: Path | None, overwrit
         refuse_existing(folder, (_JSON, _WORKBOOK, _PAGE))
 
     from ..evaluation.evaluate import evaluate as evaluate_tender
+    from ..intake.linked_files import linked_files
     from ..report.build_view import build_view
     from ..report.terminal import evaluation_text
     from .findings_text import echo_findings
@@ -58,7 +59,8 @@ def evaluate(tender: Path, bids: tuple[Path, ...], papers: Path | None, overwrit
     from .screen import color, width
 
     evaluation = evaluate_tender(reading.tender, reading.offers, reading.findings)
-    view = build_view(evaluation, record_of(reading.inputs, time))
+    further = linked_files(reading.tender, reading.inputs.tender)
+    view = build_view(evaluation, record_of(reading.inputs, further, time))
     write_all(folder, _contents(view))
     echo_findings(evaluation.findings)
     click.echo(evaluation_text(view, width(), color=color()))

@@ -4,21 +4,25 @@ from __future__ import annotations
 
 import datetime
 import hashlib
+from collections.abc import Iterable
 from importlib.metadata import version
 
-from ..intake.tender_folder import Inputs
-from ..report.view import InputFile, RecordView
+from ..intake.tender_folder import InputFile, Inputs
+from ..report.view import InputFile as FileRecord
+from ..report.view import RecordView
 
 __all__ = ["record_of"]
 
 
-def record_of(inputs: Inputs, time: datetime.datetime) -> RecordView:
+def record_of(inputs: Inputs, further: Iterable[InputFile], time: datetime.datetime) -> RecordView:
     """Record that makes a run repeatable.
 
     Parameters
     ----------
     inputs : Inputs
-        The files that were read.
+        Tender file and bids.
+    further : iterable of InputFile
+        What else was read: profiles, prices, decisions, published rules.
     time : datetime.datetime
         The time that the papers state, in UTC.
 
@@ -28,7 +32,7 @@ def record_of(inputs: Inputs, time: datetime.datetime) -> RecordView:
         Paths relative to the tender's folder, with the SHA-256 of each file.
     """
     files = tuple(
-        InputFile(file.shown_as, hashlib.sha256(file.path.read_bytes()).hexdigest())
-        for file in (inputs.tender, *inputs.bids)
+        FileRecord(file.shown_as, hashlib.sha256(file.path.read_bytes()).hexdigest())
+        for file in (inputs.tender, *further, *inputs.bids)
     )
     return RecordView(version("lossworth"), time.strftime("%Y-%m-%dT%H:%M:%SZ"), files)

@@ -1,29 +1,19 @@
-"""The one table of a csv file: UTF-8, comma or semicolon as the header has it, every row as long as the header."""
+"""The one table of offers of a csv file."""
 
 from __future__ import annotations
 
-import csv
-import io
-from collections.abc import Iterator
-from typing import Literal
-
-from ..findings import Finding, Place
-from .cells import text_cell
-from .file_bytes import MEGABYTE, utf8_text
-from .sheet import MOST_COLUMNS, MOST_ROWS, Row, Sheet
+from ..findings import Finding
+from .csv_table import LARGEST_CSV, CsvKind, read_csv_table
+from .sheet import Sheet
 from .table_header import recognized_columns
 
 __all__ = ["LARGEST_CSV", "read_csv"]
 
-#: Greatest size of a csv file. [byte]
-LARGEST_CSV = 16 * MEGABYTE
-
-_MARKS: tuple[Literal[",", ";"], ...] = (";", ",")
-_COLUMNS = "lot, bidder, unit price, no-load loss [kW], load loss [kW]"
+_OFFERS = CsvKind("lot, bidder, unit price, no-load loss [kW], load loss [kW]", recognized_columns, "header-missing")
 
 
 def read_csv(data: bytes, shown_as: str) -> tuple[Sheet | None, tuple[Finding, ...]]:
-    """Table of a csv file.
+    """Table of offers of a csv file.
 
     Parameters
     ----------
@@ -39,79 +29,4 @@ def read_csv(data: bytes, shown_as: str) -> tuple[Sheet | None, tuple[Finding, .
     findings : tuple of Finding
         What keeps the file, or a row of it, from being read.
     """
-    text = utf8_text(data, shown_as)
-    if isinstance(text, Finding):
-        return None, (text,)
-    mark = _separator(text, shown_as)
-    if isinstance(mark, Finding):
-        return None, (mark,)
-    rows: list[Row] = []
-    findings: list[Finding] = []
-    try:
-        for row in _bounded(_records(text, mark)):
-            too = _wrong_length(rows, row, shown_as, mark)
-            if too is None:
-                rows.append(row)
-            else:
-                findings.append(too)
-    except csv.Error as error:
-        rule = f"must have every quotation mark closed ({error})"
-        findings.append(Finding("file-unreadable", "file", rule, Place(shown_as, line=_last_line(rows) + 1)))
-    except OverflowError as error:
-        findings.append(Finding("file-too-large", "file", str(error), Place(shown_as)))
-    return Sheet(shown_as, None, tuple(rows)), tuple(findings)
-
-
-def _separator(text: str, shown_as: str) -> Literal[",", ";"] | Finding:
-    """Separating mark by the header alone: the one by which more of its columns are known."""
-    known = {mark: len(recognized_columns(_header(text, mark))) for mark in _MARKS}
-    best = max(_MARKS, key=lambda mark: known[mark])
-    if known[best] >= 2:
-        return best
-    line, header = next(((n, h) for n, h in enumerate(text.split("\n"), start=1) if h.strip()), (1, ""))
-    rule = f"must have a header row with its columns separated by commas or semicolons, such as: {_COLUMNS}"
-    if "\t" in header:
-        rule = "must have its columns separated by commas or semicolons, not by tabs"
-    return Finding("header-missing", "header", rule, Place(shown_as, line=line), header.strip())
-
-
-def _header(text: str, mark: str) -> list[str]:
-    try:
-        first = next(_records(text, mark), None)
-    except csv.Error:
-        return []
-    return [cell.text for cell in first.cells] if first else []
-
-
-def _records(text: str, mark: str) -> Iterator[Row]:
-    reader = csv.reader(io.StringIO(text, newline=""), delimiter=mark, strict=True)
-    line = 1
-    for record in reader:
-        row = Row(line, tuple(text_cell(cell) for cell in record))
-        line = reader.line_num + 1
-        if not row.is_blank:
-            yield row
-
-
-def _bounded(rows: Iterator[Row]) -> Iterator[Row]:
-    for number, row in enumerate(rows):
-        if number > MOST_ROWS:
-            raise OverflowError(f"must have at most {MOST_ROWS:,} rows")
-        if len(row.cells) > MOST_COLUMNS:
-            raise OverflowError(f"must have at most {MOST_COLUMNS} columns")
-        yield row
-
-
-def _wrong_length(rows: list[Row], row: Row, shown_as: str, mark: str) -> Finding | None:
-    if not rows or len(row.cells) == len(rows[0].cells):
-        return None
-    rule = f"must have {len(rows[0].cells)} cells as the header has"
-    fix = ""
-    if mark == "," and len(row.cells) > len(rows[0].cells):
-        fix = "Put numbers with a decimal comma, and text with a comma, into quotes; or separate columns by semicolons."
-    got = f"{len(row.cells)} cells: {f'{mark} '.join(cell.text for cell in row.cells)}"
-    return Finding("row-length", "row", rule, Place(shown_as, line=row.number), got, fix=fix)
-
-
-def _last_line(rows: list[Row]) -> int:
-    return rows[-1].number if rows else 0
+    return read_csv_table(data, shown_as, _OFFERS)

@@ -17,6 +17,7 @@ from .cells import Marks
 from .columns import COLUMNS
 from .file_bytes import bounded_bytes
 from .labels import read_labels
+from .linked_files import linked_names
 from .offer_rows import Table, read_offers
 from .sheet import Row, Sheet
 from .table_header import find_header, is_header
@@ -175,12 +176,13 @@ def _name(file: InputFile) -> str:
 def _unused_decimal_marks(files: Sequence[InputFile], tender: Tender | None) -> Iterator[Finding]:
     if tender is None:
         return
-    names = {_name(file) for file in files}
+    linked = (unicodedata.normalize("NFC", PurePath(name).name) for name in linked_names(tender))
+    names = {*(_name(file) for file in files), *linked}
     for name in _decimal_marks(tender):
         if name not in names:
             key = f"bids.decimal_mark_of.{name}"
             yield Finding(
-                "tender-key-not-used", key, "names no bid file of this run", Place(tender.rules.place.file, key=key)
+                "tender-key-not-used", key, "names no file of this run", Place(tender.rules.place.file, key=key)
             )
 
 

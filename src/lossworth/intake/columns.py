@@ -8,7 +8,7 @@ from dataclasses import dataclass
 from decimal import Decimal
 from types import MappingProxyType
 
-from ..units import LOSS_UNITS, PERCENT_UNITS, WEEK_UNITS
+from ..units import LOSS_UNITS, PERCENT_UNITS, RATED_POWER_UNITS, TEMPERATURE_UNITS, WEEK_UNITS
 
 __all__ = ["COLUMNS", "COLUMN_OF", "UNIT_SPELLINGS", "Column"]
 
@@ -19,8 +19,17 @@ UNIT_SPELLINGS: Mapping[str, str] = MappingProxyType(
         "Kw": "kW",
         "kw": "kW",
         "w": "W",
+        "KVA": "kVA",
+        "kva": "kVA",
         "percent": "%",
         "p.u.": "pu",
+        "° C": "°C",
+        "º C": "°C",
+        "ºC": "°C",
+        "\u2103": "°C",
+        "C": "°C",
+        "degC": "°C",
+        "deg C": "°C",
         "week": "weeks",
         "Weeks": "weeks",
     }
@@ -63,7 +72,7 @@ class Column:
     @property
     def machine_name(self) -> str:
         """Name of the field without its unit: ``no_load_loss``."""
-        for ending in ("_kw", "_percent", "_weeks"):
+        for ending in ("_kw", "_kva", "_percent", "_weeks", "_c"):
             if self.field.endswith(ending):
                 return self.field.removesuffix(ending)
         return self.field
@@ -76,8 +85,9 @@ class Column:
         return f"{self.name} [{next(iter(self.units))}]" if self.needs_unit else self.name
 
 
-def _loss(field: str, name: str, *, symbols: tuple[str, ...] = (), is_needed: bool = False) -> Column:
-    return Column(field, name, (f"{name}es",), symbols, LOSS_UNITS, needs_unit=True, is_needed=is_needed)
+def _loss(field: str, name: str, *others: str, symbols: tuple[str, ...] = (), is_needed: bool = False) -> Column:
+    plurals = (f"{each}es" for each in (name, *others) if each.endswith("loss"))
+    return Column(field, name, (*others, *plurals), symbols, LOSS_UNITS, needs_unit=True, is_needed=is_needed)
 
 
 COLUMNS: tuple[Column, ...] = (
@@ -89,6 +99,19 @@ COLUMNS: tuple[Column, ...] = (
     _loss("load_loss_kw", "load loss", symbols=("pk",), is_needed=True),
     _loss("auxiliary_loss_kw", "auxiliary loss", symbols=("paux",)),
     _loss("total_loss_kw", "total loss"),
+    Column(
+        "load_loss_rating_kva",
+        "load loss rating",
+        ("rating of the load loss", "rating of load loss"),
+        (),
+        RATED_POWER_UNITS,
+        needs_unit=True,
+    ),
+    Column("reference_temperature_c", "reference temperature", (), (), TEMPERATURE_UNITS, needs_unit=True),
+    _loss("resistive_loss_kw", "resistive loss", "I²R loss", "I2R loss"),
+    _loss("stray_loss_kw", "stray loss"),
+    _loss("cooling_power_no_load_kw", "cooling power at no load", symbols=("pc0",)),
+    _loss("cooling_power_rated_kw", "cooling power at rated load", symbols=("pcs",)),
     Column(
         "impedance_percent",
         "impedance",

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass, field
 from decimal import Decimal
+from typing import Any
 
 from ..findings import Finding, Place
 from ..money import ARITHMETIC, is_currency_code
@@ -27,10 +28,20 @@ _NUMBERS = (
     "load_loss_kw",
     "auxiliary_loss_kw",
     "total_loss_kw",
+    "load_loss_rating_kva",
+    "reference_temperature_c",
+    "resistive_loss_kw",
+    "stray_loss_kw",
+    "cooling_power_no_load_kw",
+    "cooling_power_rated_kw",
     "impedance_percent",
     "delivery_weeks",
     "quantity",
 )
+#: Basis of a guarantee, which a buyer's form may hold before any bidder fills it in.
+_NO_OFFER_ALONE = ("load_loss_rating_kva", "reference_temperature_c")
+#: Figures of which zero is possible.
+_MAY_BE_0 = ("auxiliary_loss_kw", "stray_loss_kw", "cooling_power_no_load_kw", "cooling_power_rated_kw")
 _NAMES = (Content.TEXT, Content.NUMBER)  # not a date, an error or a formula without value
 _ALWAYS_NEEDED = ("unit_price", "no_load_loss_kw", "load_loss_kw")
 
@@ -92,14 +103,14 @@ class _RowReading:
     who: tuple[str | None, str | None] = (None, None)  # bidder and lot, as findings name them
 
     def offer(self) -> Offer | None:
-        if not any(self.states(name) for name in _NUMBERS):
+        if not any(self.states(name) for name in _NUMBERS if name not in _NO_OFFER_ALONE):
             self.note_row()
             return None
         bidder, lot_entry, lot = self.bidder(), *self.lot()
         self.who = (bidder.value if bidder else None, lot_entry.value if lot_entry else None)
         currency = self.currency()
         in_header = [name for name in _NUMBERS if name in self.table.header.headings]
-        numbers = {name: self.number(name, lot, currency) for name in in_header}
+        numbers: dict[str, Any] = {name: self.number(name, lot, currency) for name in in_header}
         if bidder is None or lot_entry is None:
             return None
         offer = Offer(
@@ -141,9 +152,24 @@ class _RowReading:
         self.findings.append(Finding(kind, field_name, rule, self.place(name), got, bidder, lot, fix))
 
     def note_row(self) -> None:
+        if self.is_blank_row_of_form():
+            return
         text = "; ".join(cell.text for cell in self.row.cells if not cell.is_blank)
         rule = "states no price, loss or other figure"
         self.findings.append(Finding("row-not-read", "row", rule, self.table.sheet.place_of_row(self.row), got=text))
+
+    def is_blank_row_of_form(self) -> bool:
+        """Whether the row names a lot of the tender and answers nothing: the lot is not offered.
+
+        What a form prints beside the lot, and a column that checks the row, have no heading in the header row.
+        """
+        header, tender = self.table.header, self.table.tender
+        lot = header.headings.get("lot")
+        if lot is None or tender is None or _lot_named(collapsed(self.cell("lot").text), tender) is None:
+            return False
+        printed = {header.headings[name].at for name in _NO_OFFER_ALONE if name in header.headings} | {lot.at}
+        asked = [at for at, heading in enumerate(header.row.cells) if not heading.is_blank and at not in printed]
+        return all(self.row.cell(at).is_blank for at in asked)
 
     # Whose offer, and for what
 
@@ -179,7 +205,8 @@ class _RowReading:
     def number(self, name: str, lot: Lot | None, currency: Entry | None) -> Quantity | None:
         heading, cell = self.table.header.headings[name], self.cell(name)
         if cell.is_blank:
-            if name in _ALWAYS_NEEDED:
+            total_instead = name == "load_loss_kw" and self.states("total_loss_kw")  # for the evaluation to judge
+            if name in _ALWAYS_NEEDED and not total_instead:
                 self.report("value-missing", name, "must be stated", "")
             return None
         if heading.times is None:
@@ -238,7 +265,7 @@ def _lot_named(text: str, tender: Tender) -> Lot | None:
 
 def _out_of_bounds(name: str, value: Decimal, unit: str) -> NoNumber | None:
     """Bounds of a figure whatever the lot."""
-    if name == "auxiliary_loss_kw":
+    if name in _MAY_BE_0:
         return NoNumber("value-out-of-bounds", "must not be negative") if value < 0 else None
     if value > 0:
         return None

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import re
 from collections.abc import Iterable, Iterator, Mapping
 from dataclasses import dataclass
 from decimal import Decimal
@@ -12,12 +11,12 @@ from ..findings import Finding
 from ..money import is_currency_code
 from .cells import collapsed
 from .columns import COLUMNS, UNIT_SPELLINGS, Column
+from .header_text import in_brackets, name_of, plain
 from .sheet import Row, Sheet
 from .suggestions import nearest
 
 __all__ = ["Header", "Heading", "find_header", "is_header", "recognized_columns"]
 
-_BRACKETS = re.compile(r"[\[(]([^\[\]()]*)[\])]")
 _TELLING = ("unit_price", "no_load_loss_kw", "load_loss_kw")
 
 
@@ -138,7 +137,7 @@ def _missing(sheet: Sheet, row: Row, found: Mapping[str, object]) -> Iterator[Fi
     headers = [cell.text for cell in row.cells if not cell.is_blank and _heading(cell.text, 0) is None]
     for column in COLUMNS:
         if column.is_needed and column.field not in found:
-            folded = {_without_brackets(header): header for header in headers}
+            folded = {name_of(header): header for header in headers}
             near = nearest(column.name, folded)
             fix = f'Did the bidder mean this by "{folded[near]}"? Then write: {column.example}.' if near else ""
             rule = f"must be there, with a header such as: {column.example}"
@@ -165,7 +164,7 @@ def _unit_findings(sheet: Sheet, row: Row, headings: Iterable[Heading]) -> Itera
 
 
 def _not_read(sheet: Sheet, row: Row, at: int, text: str) -> Finding:
-    near = nearest(_without_brackets(text), (column.name for column in COLUMNS))
+    near = nearest(name_of(text), (column.name for column in COLUMNS))
     fix = f'Did the bidder mean "{near}"?' if near else ""
     return Finding(
         "column-not-read", "column", "is not used by the evaluation", sheet.place_of(row, at), got=text, fix=fix
@@ -178,27 +177,18 @@ def _heading(text: str, at: int) -> Heading | None:
     machine = _machine_heading(text, at)
     if machine is not None:
         return machine
-    name = _without_brackets(text)
-    inside = [group.strip() for group in _BRACKETS.findall(text)]
+    name = name_of(text)
+    inside = in_brackets(text)
     column = _COLUMN_BY_NAME.get(name)
     if column is None:
         return None
-    return _with_unit(column, at, text, [group for group in inside if group and _plain(group) not in column.symbols])
+    return _with_unit(column, at, text, [group for group in inside if group and plain(group) not in column.symbols])
 
 
 def _names(column: Column) -> set[str]:
-    names = {_plain(column.name), *(_plain(other) for other in column.others)}
+    names = {plain(column.name), *(plain(other) for other in column.others)}
     beside = {f"{name} {symbol}" for name in names for symbol in column.symbols}
     return names | beside | set(column.symbols)
-
-
-def _plain(text: str) -> str:
-    """Small letters, hyphens and commas as spaces, without the prefix that says nothing new."""
-    return collapsed(re.sub(r"[-\u2010\u2011,:*]", " ", text.casefold())).removeprefix("guaranteed ")
-
-
-def _without_brackets(text: str) -> str:
-    return _plain(_BRACKETS.sub(" ", text))
 
 
 def _machine_heading(text: str, at: int) -> Heading | None:
@@ -206,7 +196,16 @@ def _machine_heading(text: str, at: int) -> Heading | None:
     folded = text.casefold().removeprefix("guaranteed_")
     if "_" not in folded:
         return None
-    endings = {"_kw": "kW", "_w": "W", "_percent": "%", "_pu": "pu", "_weeks": "weeks"}
+    endings = {
+        "_kw": "kW",
+        "_w": "W",
+        "_kva": "kVA",
+        "_mva": "MVA",
+        "_percent": "%",
+        "_pu": "pu",
+        "_weeks": "weeks",
+        "_c": "°C",
+    }
     for column in COLUMNS:
         if folded in (column.machine_name, column.field) and not column.units:
             return _with_unit(column, at, text, [])

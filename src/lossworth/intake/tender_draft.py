@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping
+from collections.abc import Callable, Iterator, Mapping
 from dataclasses import dataclass, field
 from decimal import Decimal
 
@@ -10,7 +10,7 @@ from ..findings import Finding, Place
 from ..records.quantity import Entry, Quantity
 from .tender_values import Written
 
-__all__ = ["Draft", "DraftLot", "DraftTable", "Loc"]
+__all__ = ["Check", "Draft", "DraftLot", "DraftTable", "Loc"]
 
 #: Keys and indices from the top of the record: ``("lots", 2, "rates")``.
 Loc = tuple[str | int, ...]
@@ -34,6 +34,8 @@ class DraftTable:
         What could be read, by field of the record.
     given : dict of str to tuple of str and Place
         Key and place of every field that the file gives, readable or not.
+    inside : dict of str to tuple of DraftTable
+        Tables that stand in it, by their names in the file.
     """
 
     table: str
@@ -42,6 +44,18 @@ class DraftTable:
     place: Place
     values: dict[str, object] = field(default_factory=dict)
     given: dict[str, tuple[str, Place]] = field(default_factory=dict)
+    inside: dict[str, tuple[DraftTable, ...]] = field(default_factory=dict)
+
+    def one(self, name: str) -> DraftTable | None:
+        """The table of this name that stands in it; None where there is none that can be read."""
+        return next(iter(self.inside.get(name, ())), None)
+
+    def tables(self) -> Iterator[DraftTable]:
+        """The table and all that stand in it."""
+        yield self
+        for tables in self.inside.values():
+            for table in tables:
+                yield from table.tables()
 
     def number(self, name: str) -> Decimal | None:
         """Value of a number; None where there is none that can be read."""
@@ -96,19 +110,31 @@ class DraftLot:
     """One lot with the tables that value its losses."""
 
     own: DraftTable
-    rates: DraftTable | None = None
-    derivation: DraftTable | None = None
-    study: DraftTable | None = None
+
+    @property
+    def rates(self) -> DraftTable | None:
+        """Announced rates."""
+        return self.own.one("rates")
+
+    @property
+    def derivation(self) -> DraftTable | None:
+        """The announced derivation."""
+        return self.own.one("derivation")
+
+    @property
+    def study(self) -> DraftTable | None:
+        """A planner's derivation beside announced rates."""
+        return self.own.one("study")
+
+    @property
+    def loss_basis(self) -> DraftTable | None:
+        """Basis on which losses are to be guaranteed."""
+        return self.own.one("loss_basis")
 
     @property
     def derivations(self) -> tuple[DraftTable, ...]:
         """The announced derivation and the planner's study, as far as there are any."""
         return tuple(table for table in (self.derivation, self.study) if table is not None)
-
-    def tables(self) -> Iterator[DraftTable]:
-        """Tables of the lot."""
-        yield self.own
-        yield from (table for table in (self.rates, *self.derivations) if table is not None)
 
 
 @dataclass(frozen=True)
@@ -150,7 +176,9 @@ class Draft:
         """All tables."""
         single = (self.identity, self.rules, self.bid_files, self.decimal_mark_of, self.exchange, self.exchange_rates)
         yield from (table for table in single if table is not None)
-        yield from self.economics.values()
-        yield from self.loading.values()
-        for lot in self.lots:
-            yield from lot.tables()
+        for table in (*self.economics.values(), *self.loading.values(), *(lot.own for lot in self.lots)):
+            yield from table.tables()
+
+
+#: Looks at the draft, not at the record, so that one value out of bounds does not hide a contradiction elsewhere.
+Check = Callable[[Draft], Iterator[Finding]]

@@ -7,6 +7,7 @@ from dataclasses import replace
 from ..findings import Finding
 from ..records.tender import Tender
 from .file_bytes import MEGABYTE, bounded_bytes, utf8_text
+from .linked_files import with_linked_files
 from .tender_checks import CHECKS
 from .tender_folder import InputFile
 from .tender_reading import read_draft
@@ -34,7 +35,7 @@ def read_tender(file: InputFile) -> tuple[Tender | None, tuple[Finding, ...]]:
         None where a value is missing, unreadable or out of bounds. Where keys contradict each other the record
         stands, so that the bids can be read in the same run; the findings then stop the evaluation.
     findings : tuple of Finding
-        All of the file, in the order of its lines.
+        All of the file and of those that it names, in the order of lines.
     """
     data = bounded_bytes(file.path, file.shown_as, LARGEST_TENDER_FILE)
     if isinstance(data, Finding):
@@ -45,10 +46,11 @@ def read_tender(file: InputFile) -> tuple[Tender | None, tuple[Finding, ...]]:
     document = parse_toml(source, file.shown_as)
     if isinstance(document, Finding):
         return None, (document,)
-    draft, unread = read_draft(document, find_spots(source), file.shown_as)
+    written, unread = read_draft(document, find_spots(source), file.shown_as)
+    draft, about_files = with_linked_files(written, file.path.parent)
     tender, out_of_bounds = record_of(draft)
     contradictions = (finding for check in CHECKS for finding in check(draft))
-    return tender, _in_order_of_lines((*unread, *out_of_bounds, *contradictions))
+    return tender, _in_order_of_lines((*unread, *about_files, *out_of_bounds, *contradictions), file.shown_as)
 
 
 def _of_the_buyer(finding: Finding) -> Finding:
@@ -58,6 +60,11 @@ def _of_the_buyer(finding: Finding) -> Finding:
     )
 
 
-def _in_order_of_lines(findings: tuple[Finding, ...]) -> tuple[Finding, ...]:
-    """Findings by line, each once: the record and a check may ask for the same key."""
-    return tuple(sorted(dict.fromkeys(findings), key=lambda f: (f.place.line or 0) if f.place else 0))
+def _in_order_of_lines(findings: tuple[Finding, ...], file: str) -> tuple[Finding, ...]:
+    """Findings of the tender file by line, then those of other files; each once: two checks may ask for one key."""
+
+    def order(finding: Finding) -> tuple[bool, str, int]:
+        place = finding.place
+        return (place.file != file, place.file, place.line or 0) if place else (False, "", 0)
+
+    return tuple(sorted(dict.fromkeys(findings), key=order))

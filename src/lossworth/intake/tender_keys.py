@@ -9,10 +9,20 @@ from enum import Enum, auto
 from types import MappingProxyType
 
 from ..money import RoundingMode
-from ..records.tender import PriceOfYear1, RoundingPoint, Timing
+from ..records.tender import (
+    CoolingValuation,
+    Method,
+    PresentValueDate,
+    PriceOfYear1,
+    RoundingPoint,
+    Timing,
+)
 from ..units import LOSS_UNITS, RATE_BASES, RATED_POWER_UNITS, factor
 
-__all__ = ["TABLES", "Key", "Reads", "key_of_field"]
+__all__ = ["CLOCKS", "DAYLIGHT_SAVING", "INSIDE", "TABLES", "Inside", "Key", "Reads", "key_of_field"]
+
+DAYLIGHT_SAVING = "local time with daylight saving"
+CLOCKS = ("standard time", DAYLIGHT_SAVING)
 
 
 class Reads(Enum):
@@ -23,8 +33,14 @@ class Reads(Enum):
     NUMBERS = auto()
     TEXT = auto()
     NAME = auto()  # a text that the record holds without its place
+    NAMES = auto()
     WORD = auto()
+    WORDS = auto()
     DATE = auto()
+    TIME = auto()
+    MONTHS = auto()
+    FLAG = auto()
+    FILE = auto()
 
 
 @dataclass(frozen=True, slots=True)
@@ -45,6 +61,8 @@ class Key:
         Factor to the unit of the field.
     words : tuple of str
         The texts allowed.
+    for_reading : bool
+        Whether it says how a file is to be read, and fills no field of a record.
     """
 
     name: str
@@ -53,11 +71,37 @@ class Key:
     field: str = ""
     times: Decimal = Decimal(1)
     words: tuple[str, ...] = ()
+    for_reading: bool = False
 
     @property
     def fills(self) -> str:
         """Field of the record."""
         return self.field or self.name
+
+
+@dataclass(frozen=True, slots=True)
+class Inside:
+    """A table that stands in another one.
+
+    Parameters
+    ----------
+    name : str
+        As it stands in the file, behind the name of the outer table.
+    table : str
+        Its row in `TABLES`; empty where its keys are names that the buyer chooses.
+    field : str
+        Field of the outer record; empty where it says how a file is to be read.
+    many : bool
+        Whether it may stand several times, in double brackets.
+    any_name : Key or None
+        What each value must be where the keys are names.
+    """
+
+    name: str
+    table: str = ""
+    field: str = ""
+    many: bool = False
+    any_name: Key | None = None
 
 
 def _text(name: str) -> Key:
@@ -68,7 +112,13 @@ def _word(name: str, *words: str) -> Key:
     return Key(name, Reads.WORD, words=words)
 
 
-_DERIVATION = (_text("economics"), _text("loading"), Key("round_rates_to", Reads.POWER_OF_TEN, "{currency}/kW"))
+_DERIVATION = (
+    _text("economics"),
+    _text("loading"),
+    _word("method", *Method),
+    Key("round_rates_to", Reads.POWER_OF_TEN, "{currency}/kW"),
+)
+_TERMS = ("real", "nominal")
 
 #: By table; a table of the file that others stand in has a dot: ``lot.rates``.
 TABLES: Mapping[str, tuple[Key, ...]] = MappingProxyType(
@@ -91,21 +141,47 @@ TABLES: Mapping[str, tuple[Key, ...]] = MappingProxyType(
         "economics": (
             Key("energy_price_per_kwh", unit="{currency}/kWh"),
             Key("energy_price_by_year_per_kwh", Reads.NUMBERS, unit="{currency}/kWh"),
+            Key("energy_price_by_year", Reads.FILE, field="energy_price_by_year_per_kwh"),
+            Key("energy_price_series", Reads.FILE),
+            Key("energy_price_clock", Reads.WORD, words=CLOCKS, for_reading=True),
             Key("energy_price_escalation_percent", unit="%/year"),
             _word("energy_price_meaning", *PriceOfYear1),
+            Key("carbon_cost_per_kwh", unit="{currency}/kWh"),
+            Key("carbon_cost_escalation_percent", unit="%/year"),
+            Key("carbon_cost_counts", Reads.FLAG),
+            Key("carbon_intensity_kg_per_kwh", unit="kg/kWh"),
             Key("demand_charge_per_kw_year", unit="{currency}/(kW year)"),
+            Key("demand_charge_per_kw_month", unit="{currency}/(kW month)"),
             Key("demand_charge_escalation_percent", unit="%/year"),
             Key("discount_rate_percent", unit="%/year"),
+            _word("discount_rate_terms", *_TERMS),
+            _word("price_terms", *_TERMS),
+            Key("fixed_charge_rate_percent", unit="%/year"),
+            Key("price_date", Reads.DATE),
+            Key("service_date", Reads.DATE),
+            _word("present_value_at", *PresentValueDate),
             Key("evaluation_period_years", unit="years"),
             _word("timing", *Timing),
             Key("upstream_gross_up"),
             _text("source"),
         ),
+        "economics.block": (
+            _text("name"),
+            Key("price_per_kwh", unit="{currency}/kWh"),
+            Key("days", Reads.NAMES, field="day_types"),
+            Key("months", Reads.MONTHS),
+            Key("from", Reads.TIME, field="starts"),
+            Key("to", Reads.TIME, field="ends"),
+        ),
         "loading": (
+            Key("profile", Reads.FILE),
+            Key("profile_clock", Reads.WORD, words=CLOCKS, for_reading=True),
+            Key("profile_reverse_flow", Reads.WORD, words=("magnitude",), for_reading=True),
             Key("load_factor"),
             Key("loss_factor_coefficient"),
             Key("loss_factor"),
             Key("peak_load_pu"),
+            Key("peak_load_by_year_pu", Reads.NUMBERS),
             Key("peak_load_growth_percent", unit="%/year"),
             Key("peak_load_cap_pu"),
             Key("peak_responsibility_factor"),
@@ -114,6 +190,7 @@ TABLES: Mapping[str, tuple[Key, ...]] = MappingProxyType(
             Key("cooling_share_at_peak"),
             _text("source"),
         ),
+        "loading.cooling_stage": (Key("above_load_pu"), Key("share_of_auxiliary_loss")),
         "lot": (
             Key("id", Reads.NAME),
             _text("description"),
@@ -129,6 +206,7 @@ TABLES: Mapping[str, tuple[Key, ...]] = MappingProxyType(
             Key("impedance_percent", unit="%"),
             Key("impedance_tolerance_percentage_points", unit="percentage points"),
             Key("latest_delivery_weeks", unit="weeks"),
+            _word("cooling_valuation", *CoolingValuation),
         ),
         "lot.rates": (
             Key("no_load", unit="{currency}/{per}"),
@@ -139,6 +217,30 @@ TABLES: Mapping[str, tuple[Key, ...]] = MappingProxyType(
         ),
         "lot.derivation": _DERIVATION,
         "lot.study": _DERIVATION,
+        "lot.loss_basis": (
+            Key("reference_temperature_c", unit="°C"),
+            Key("load_loss_rating_kva", unit="kVA"),
+            Key(
+                "load_loss_rating_mva",
+                unit="MVA",
+                field="load_loss_rating_kva",
+                times=factor("MVA", RATED_POWER_UNITS),
+            ),
+            _word("conductor", "copper", "aluminum"),
+            Key("convert", Reads.WORDS, words=("rating", "temperature", "total loss")),
+        ),
+    }
+)
+
+#: Tables that stand in others, by the row of the outer table in `TABLES`.
+INSIDE: Mapping[str, tuple[Inside, ...]] = MappingProxyType(
+    {
+        "economics": (Inside("block", "economics.block", "energy_price_blocks", many=True),),
+        "loading": (
+            Inside("profile_day_weights", any_name=Key("profile_day_weights", unit="days/year")),
+            Inside("cooling_stage", "loading.cooling_stage", "cooling_stages", many=True),
+        ),
+        "lot": tuple(Inside(name, f"lot.{name}", name) for name in ("rates", "derivation", "study", "loss_basis")),
     }
 )
 

@@ -11,18 +11,14 @@ from ..money import is_currency_code
 from ..units import RATE_BASES
 from .suggestions import did_you_mean, nearest
 from .tender_draft import Draft, DraftLot, DraftTable, Loc
-from .tender_keys import TABLES, Key, Reads
-from .tender_values import Refusal, Written, read_value
+from .tender_keys import INSIDE, TABLES, Inside, Key, Reads
+from .tender_values import LISTS, Refusal, Written, read_value
 from .toml_places import Spot, TomlPath
 
 __all__ = ["read_draft"]
 
-#: Tables inside a table; ``*`` stands for every name.
-_INSIDE: Mapping[str, tuple[str, ...]] = {
-    "bids": ("decimal_mark_of",),
-    "exchange": ("rates",),
-    "lot": ("rates", "derivation", "study"),
-}
+#: Tables whose keys are names, and which stand apart in the draft.
+_BY_NAME: Mapping[str, tuple[str, ...]] = {"bids": ("decimal_mark_of",), "exchange": ("rates",)}
 _TOP = ("format_version", "tender", "rules", "bids", "exchange", "economics", "loading", "lot")
 _DECIMAL_MARK = Key("decimal_mark_of", Reads.WORD, words=(".", ","))
 
@@ -98,16 +94,21 @@ class _Reader:
 
     # Tables
 
-    def table(self, path: TomlPath, rule: str) -> Mapping[str, Any] | None:
-        """Table at a path; None where there is none, with a finding where something else stands there."""
+    def at(self, path: TomlPath) -> Any:
+        """Value at a path; None where there is none."""
         value: Any = self.document
         for part in path:
             if isinstance(part, str) and part not in value:
                 return None
             value = value[part]
-        if isinstance(value, dict):
+        return value
+
+    def table(self, path: TomlPath, rule: str, shown: str = "") -> Mapping[str, Any] | None:
+        """Table at a path; None where there is none, with a finding where something else stands there."""
+        value = self.at(path)
+        if value is None or isinstance(value, dict):
             return value
-        self.report("tender-value", ".".join(map(str, path)), rule, path, self.text(path, value))
+        self.report("tender-value", shown or ".".join(map(str, path)), rule, path, self.text(path, value))
         return None
 
     def single(self, name: str, loc: Loc, *, needed: bool = False) -> DraftTable | None:
@@ -145,26 +146,39 @@ class _Reader:
     def lot(self, number: int, lot: Mapping[str, Any]) -> DraftLot:
         own_name = lot.get("id")
         shown = f"lot.{own_name}" if isinstance(own_name, str) and own_name else f"lot[{number + 1}]"
-        own = self.keys_of("lot", lot, ("lot", number), ("lots", number), shown)
+        return DraftLot(self.keys_of("lot", lot, ("lot", number), ("lots", number), shown))
 
-        def inside(name: str) -> DraftTable | None:
-            path: TomlPath = ("lot", number, name)
-            table = self.table(path, f"must be a table, [lot.{name}]")
-            loc = ("lots", number, name)
-            if table is not None:
-                return self.keys_of(f"lot.{name}", table, path, loc, f"{shown}.{name}")
-            if name in lot:
-                self.failed.add(loc)
-            return None
+    def read_inside(self, draft: DraftTable, inside: Inside, path: TomlPath) -> None:
+        """Read the tables of one name that stand in another table."""
+        shown, value = f"{draft.key}.{inside.name}", self.at(path)
+        field_loc = (*draft.loc, inside.field or inside.name)
+        if inside.any_name is not None:
+            key = inside.any_name
+            names = self.by_name(path, field_loc, lambda _: key, shown)
+            draft.inside[inside.name] = () if names is None else (names,)
+        elif not inside.many:
+            table = self.table(path, f"must be a table, [{shown}]", shown)
+            if table is None:
+                self.failed.add(field_loc)
+            else:
+                draft.inside[inside.name] = (self.keys_of(inside.table, table, path, field_loc, shown),)
+        elif isinstance(value, list) and value and all(isinstance(each, dict) for each in value):
+            draft.inside[inside.name] = tuple(
+                self.keys_of(inside.table, each, (*path, n), (*field_loc, n), f"{shown}[{n + 1}]")
+                for n, each in enumerate(value)
+            )
+        else:
+            self.failed.add(field_loc)
+            self.report("tender-value", shown, f"must be a table in double brackets, [[{shown}]]", path)
 
-        return DraftLot(own, inside("rates"), inside("derivation"), inside("study"))
-
-    def by_name(self, path: TomlPath, loc: Loc, key_of: Callable[[str], Key | None]) -> DraftTable | None:
+    def by_name(
+        self, path: TomlPath, loc: Loc, key_of: Callable[[str], Key | None], shown: str = ""
+    ) -> DraftTable | None:
         """Table whose keys are names that the buyer chooses, all of one kind of value."""
-        name = ".".join(map(str, path))
-        table = self.table(path, f"must be a table, [{name}]")
+        name = shown or ".".join(map(str, path))
+        table = self.table(path, f"must be a table, [{name}]", name)
         if table is None:
-            if path[-1] in self.document[str(path[0])]:
+            if self.at(path) is not None:
                 self.failed.add(loc)
             return None
         draft = DraftTable(name, name, loc, self.place(path, name))
@@ -199,7 +213,8 @@ class _Reader:
     def keys_of(self, kind: str, table: Mapping[str, Any], path: TomlPath, loc: Loc, shown: str) -> DraftTable:
         draft = DraftTable(kind, shown, loc, self.place(path, shown))
         keys = {key.name: key for key in TABLES[kind]}
-        self.unknown_keys(table, path, (*keys, *_INSIDE.get(kind, ())), shown)
+        inside = {each.name: each for each in INSIDE.get(kind, ())}
+        self.unknown_keys(table, path, (*keys, *inside, *_BY_NAME.get(kind, ())), shown)
         for name, key in keys.items():
             if name not in table:
                 continue
@@ -209,6 +224,9 @@ class _Reader:
                 continue
             unit = key.unit.format(currency=self.currency, per=_rate_base(table))
             self.read_into(draft, key, name, key.fills, (*path, name), table[name], unit)
+        for name, each in inside.items():
+            if name in table:
+                self.read_inside(draft, each, (*path, name))
         return draft
 
     def read_into(
@@ -216,7 +234,7 @@ class _Reader:
     ) -> None:
         shown = f"{draft.key}.{name}"
         draft.given[fills] = (name, self.place(path, shown))
-        read = self.numbers if key.reads is Reads.NUMBERS else self.one
+        read = self.elements if key.reads in LISTS else self.one
         result = read(key, shown, path, value, unit or key.unit)
         if result is None:
             self.failed.add((*draft.loc, fills))
@@ -231,10 +249,9 @@ class _Reader:
             return None
         return result
 
-    def numbers(self, key: Key, shown: str, path: TomlPath, value: object, unit: str) -> tuple[object, ...] | None:
+    def elements(self, key: Key, shown: str, path: TomlPath, value: object, unit: str) -> tuple[object, ...] | None:
         if not isinstance(value, list) or not value:
-            rule = "must be a list of numbers, one for each year"
-            self.report("tender-value", shown, rule, path, self.text(path, value))
+            self.report("tender-value", shown, LISTS[key.reads], path, self.text(path, value))
             return None
         read = [self.one(key, f"{shown}[{n + 1}]", (*path, n), element, unit) for n, element in enumerate(value)]
         return None if any(element is None for element in read) else tuple(read)

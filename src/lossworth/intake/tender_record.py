@@ -13,12 +13,12 @@ from ..money import Rounding, RoundingMode
 from ..records.quantity import Quantity
 from ..records.tender import Tender
 from .tender_draft import Draft, DraftLot, DraftTable, Loc
-from .tender_keys import key_of_field
+from .tender_keys import INSIDE, TABLES, key_of_field
 from .tender_values import Written
 
 __all__ = ["record_of"]
 
-_TABLES_WITH_PLACE = ("rules", "economics", "loading", "lot", "lot.rates", "lot.derivation", "lot.study")
+_TABLES_WITHOUT_PLACE = ("tender", "bids", "exchange")
 
 
 def record_of(draft: Draft) -> tuple[Tender | None, tuple[Finding, ...]]:
@@ -67,9 +67,15 @@ def _whole_number(written: Written | None) -> int | None:
 
 
 def _fields(table: DraftTable) -> dict[str, Any]:
-    fields = dict(table.values)
-    if table.table in _TABLES_WITH_PLACE:
+    """Fields of the record, those of the tables inside included."""
+    for_reading = {key.fills for key in TABLES.get(table.table, ()) if key.for_reading}
+    fields: dict[str, Any] = {name: value for name, value in table.values.items() if name not in for_reading}
+    if table.table not in _TABLES_WITHOUT_PLACE:
         fields["place"] = table.place
+    for inside in INSIDE.get(table.table, ()):
+        tables = table.inside.get(inside.name, ())
+        if tables and inside.field:
+            fields[inside.field] = tuple(map(_fields, tables)) if inside.many else _fields(tables[0])
     return fields
 
 
@@ -92,8 +98,6 @@ def _rounded_by(table: DraftTable, quantum_field: str, mode: object) -> dict[str
 
 def _lot(lot: DraftLot, mode: object) -> dict[str, Any]:
     fields = _fields(lot.own)
-    if lot.rates is not None:
-        fields["rates"] = _fields(lot.rates)
     for name, table in (("derivation", lot.derivation), ("study", lot.study)):
         if table is not None:
             fields[name] = _rounded_by(table, "round_rates_to", mode)

@@ -12,12 +12,22 @@ from types import MappingProxyType
 from ..findings import Place
 from ..money import ARITHMETIC, RoundingMode
 from ..records.quantity import Entry, Quantity
-from ..records.tender import PriceOfYear1, RoundingPoint, Timing
+from ..records.tender import CoolingValuation, Method, PresentValueDate, PriceOfYear1, RoundingPoint, Timing
 from .numbers import LARGEST, is_beyond_meaning
 from .suggestions import did_you_mean
 from .tender_keys import Key, Reads
 
-__all__ = ["Refusal", "Written", "read_value"]
+__all__ = ["LISTS", "Refusal", "Written", "read_value"]
+
+#: Values that are lists, and what the list must be.
+LISTS: Mapping[Reads, str] = MappingProxyType(
+    {
+        Reads.NUMBERS: "must be a list of numbers, one for each year",
+        Reads.NAMES: 'must be a list of texts, such as ["workday", "saturday"]',
+        Reads.WORDS: "must be a list of texts",
+        Reads.MONTHS: "must be a list of months, such as [11, 12, 1, 2]",
+    }
+)
 
 
 @dataclass(frozen=True, slots=True)
@@ -62,7 +72,7 @@ def read_value(key: Key, written: Written, unit: str) -> object | Refusal:
     Returns
     -------
     object or Refusal
-        A Quantity, an Entry, a text, a word's member or a date; or what was expected instead.
+        A Quantity, an Entry, a text, a word's member, a date, a time, a flag; or what was expected instead.
     """
     return _READERS[key.reads](key, written, unit)
 
@@ -106,6 +116,26 @@ def _date(_key: Key, written: Written, _unit: str) -> datetime.date | Refusal:
     return Refusal("must be a date without quotes and without a time, such as 2026-09-15")
 
 
+def _time(_key: Key, written: Written, _unit: str) -> datetime.time | Refusal:
+    value = written.value
+    if isinstance(value, datetime.time) and not value.second and not value.microsecond:
+        return value
+    return Refusal("must be a time of day without quotes, to the minute, such as 07:00:00")
+
+
+def _month(_key: Key, written: Written, _unit: str) -> int | Refusal:
+    value = written.value
+    if type(value) is int and 1 <= value <= _MONTHS:
+        return value
+    return Refusal("must be the number of a month, 1 to 12")
+
+
+def _flag(_key: Key, written: Written, _unit: str) -> bool | Refusal:
+    if isinstance(written.value, bool):
+        return written.value
+    return Refusal("must be true or false, without quotes")
+
+
 def _word(key: Key, written: Written, _unit: str) -> object | Refusal:
     value = written.value
     if isinstance(value, str) and value in key.words:
@@ -115,23 +145,34 @@ def _word(key: Key, written: Written, _unit: str) -> object | Refusal:
     return Refusal(f"must be {allowed}", did_you_mean(str(value), key.words) if isinstance(value, str) else "")
 
 
+_MONTHS = 12
 _WORDS_OF: Mapping[str, type[StrEnum]] = MappingProxyType(
     {
         "rounding": RoundingMode,
         "rounding_applies_to": RoundingPoint,
         "energy_price_meaning": PriceOfYear1,
         "timing": Timing,
+        "method": Method,
+        "present_value_at": PresentValueDate,
+        "cooling_valuation": CoolingValuation,
     }
 )
 
 _READERS: Mapping[Reads, Callable[[Key, Written, str], object]] = MappingProxyType(
     {
         Reads.NUMBER: _number,
-        Reads.NUMBERS: _number,  # asked for each element
         Reads.POWER_OF_TEN: _power_of_ten,
         Reads.TEXT: _text,
+        Reads.FILE: _text,
         Reads.NAME: _name,
         Reads.WORD: _word,
         Reads.DATE: _date,
+        Reads.TIME: _time,
+        Reads.FLAG: _flag,
+        # of lists, asked for each element
+        Reads.NUMBERS: _number,
+        Reads.NAMES: _name,
+        Reads.WORDS: _word,
+        Reads.MONTHS: _month,
     }
 )
