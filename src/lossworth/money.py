@@ -12,6 +12,10 @@ __all__ = ["ARITHMETIC", "Rounding", "RoundingMode", "is_currency_code"]
 #: Context of every decimal operation: 50 digits, so that no product of stated figures is ever rounded in between.
 ARITHMETIC = Context(prec=50)
 
+#: A quotient times its divisor may miss the whole amount by the last of 50 digits; what is rounded to money is first
+#: brought to 48, so that 100,000.00 does not become 99,999.99. Four factors of twelve digits stay exact.
+_GUARD = Context(prec=48)
+
 _CURRENCY_CODE = re.compile(r"[A-Z]{3}")
 
 
@@ -76,7 +80,8 @@ class Rounding:
         Decimal
             Rounded amount, with as many places as the quantum has.
         """
-        rounded = value.quantize(self.quantum.normalize(), rounding=self.mode.decimal_constant, context=ARITHMETIC)
+        exact, quantum = _GUARD.plus(value), self.quantum.normalize()
+        rounded = exact.quantize(quantum, rounding=self.mode.decimal_constant, context=ARITHMETIC)
         return rounded if rounded else abs(rounded)  # never a negative zero
 
     def __str__(self) -> str:

@@ -29,7 +29,7 @@ def check(tender: Path, bids: tuple[Path, ...]) -> None:
     from ..evaluation.evaluate import evaluate
     from ..evaluation.result import Status
 
-    evaluation = evaluate(reading.tender, reading.offers, reading.findings)
+    evaluation = evaluate(reading.tender, reading.offers, reading.findings, reading.decisions)
     echo_findings(evaluation.findings)
     statuses = [offer.status for lot in evaluation.lots for offer in lot.offers]
     counts = ", ".join(

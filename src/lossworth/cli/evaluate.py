@@ -10,11 +10,14 @@ import click
 from .inputs import place_and_bids_arguments
 
 if TYPE_CHECKING:
-    from ..report.view import EvaluationView
+    from ..evaluation.result import Evaluation
+    from ..report.view import EvaluationView, RecordView
+    from .inputs import Reading
 
 __all__ = ["evaluate"]
 
 _JSON, _WORKBOOK, _PAGE = "evaluation.json", "evaluation.xlsx", "evaluation.html"
+_FOLDERS = ("questions", "internal")
 
 
 @click.command()
@@ -34,7 +37,9 @@ def evaluate(tender: Path, bids: tuple[Path, ...], papers: Path | None, overwrit
     """Rank the offers of each lot by total owning cost and write the papers.
 
     TENDER is a tender folder or a tender file; BIDS, where given, are read in place of the folder's bids.
-    Written are evaluation.json, evaluation.xlsx and evaluation.html, all of them or none.
+    Written are evaluation.json, evaluation.xlsx and evaluation.html, all of them or none; and, where a figure looks
+    like a slip, a letter with the question to its bidder in questions/ and, not for bidders, in internal/ what the
+    answers would change. Decisions are read from decisions.toml, published rules from published_rules.json.
     """
     from ..errors import EvaluationStopped
     from ..findings import any_stops
@@ -48,23 +53,27 @@ def evaluate(tender: Path, bids: tuple[Path, ...], papers: Path | None, overwrit
         raise EvaluationStopped(reading.findings)
     folder = papers or reading.inputs.papers
     if not overwrite:
-        refuse_existing(folder, (_JSON, _WORKBOOK, _PAGE))
+        refuse_existing(folder, (_JSON, _WORKBOOK, _PAGE, *_FOLDERS))
 
     from ..evaluation.evaluate import evaluate as evaluate_tender
-    from ..intake.linked_files import linked_files
+    from ..evaluation.rules_proof import compare_rules, rules_findings
     from ..report.build_view import build_view
     from ..report.terminal import evaluation_text
     from .findings_text import echo_findings
     from .record import record_of
     from .screen import color, width
 
-    evaluation = evaluate_tender(reading.tender, reading.offers, reading.findings)
-    further = linked_files(reading.tender, reading.inputs.tender)
-    view = build_view(evaluation, record_of(reading.inputs, further, time))
-    write_all(folder, _contents(view))
+    kept = reading.published_rules
+    proof = None if kept is None else compare_rules(reading.tender, kept)
+    findings = (*reading.findings, *rules_findings(proof))
+    evaluation = evaluate_tender(reading.tender, reading.offers, findings, reading.decisions)
+    record = record_of(reading.inputs, reading.further, time)
+    view = build_view(evaluation, record, proof)
+    contents = _contents(view) | _questions(evaluation, reading, record)
+    write_all(folder, contents, whole_folders=_FOLDERS)
     echo_findings(evaluation.findings)
     click.echo(evaluation_text(view, width(), color=color()))
-    click.echo(f"Papers in {folder}: {_PAGE}, {_WORKBOOK}, {_JSON}")
+    click.echo(f"Papers in {folder}: {', '.join(contents)}")
 
 
 def _contents(view: EvaluationView) -> dict[str, bytes]:
@@ -77,3 +86,24 @@ def _contents(view: EvaluationView) -> dict[str, bytes]:
         _WORKBOOK: workbook_bytes(view),
         _PAGE: page_html(view).encode(),
     }
+
+
+def _questions(evaluation: Evaluation, reading: Reading, record: RecordView) -> dict[str, bytes]:
+    """Letters with questions to bidders and, apart from them, the internal paper on what the answers would change."""
+    from ..evaluation.suppositions import open_suspicions, suppose_right
+    from ..report.build_internal_paper import build_internal_paper
+    from ..report.build_questions import build_letters
+    from ..report.internal_paper import internal_paper_html, internal_paper_json
+    from ..report.letters import letter_html, letter_text
+
+    suspicions = open_suspicions(evaluation, reading.offers)
+    contents: dict[str, bytes] = {}
+    for letter in build_letters(evaluation.tender, reading.offers, suspicions, evaluation.findings):
+        contents[f"{_FOLDERS[0]}/{letter.file_stem}.html"] = letter_html(letter).encode()
+        contents[f"{_FOLDERS[0]}/{letter.file_stem}.txt"] = letter_text(letter).encode()
+    if suspicions:
+        rankings = suppose_right(evaluation, reading.offers, suspicions, reading.findings)
+        paper = build_internal_paper(evaluation.tender, suspicions, rankings, record)
+        contents[f"{_FOLDERS[1]}/suppositions.html"] = internal_paper_html(paper).encode()
+        contents[f"{_FOLDERS[1]}/suppositions.json"] = internal_paper_json(paper).encode()
+    return contents

@@ -14,6 +14,7 @@ if TYPE_CHECKING:
     from ..findings import Finding
     from ..intake.tender_folder import InputFile, Inputs
     from ..records.bid import Offer
+    from ..records.decision import Decision
     from ..records.tender import Tender
 
 __all__ = ["Reading", "place_and_bids_arguments", "place_argument", "read_everything", "read_tender_only"]
@@ -28,6 +29,9 @@ class Reading(NamedTuple):
     tender: Tender | None
     offers: tuple[Offer, ...]
     findings: tuple[Finding, ...]
+    decisions: tuple[Decision, ...] = ()
+    published_rules: str | None = None
+    further: tuple[InputFile, ...] = ()
 
 
 def place_argument(function: Callable[..., Any]) -> Callable[..., Any]:
@@ -80,6 +84,9 @@ def read_everything(place: Path, bids: tuple[Path, ...]) -> Reading:
         Records as far as they could be read, and every finding.
     """
     from ..intake.bid_files import read_bids
+    from ..intake.decision_file import find_decisions, read_decisions
+    from ..intake.linked_files import linked_files
+    from ..intake.published_rules import find_published_rules, read_published_rules
     from ..intake.tender_file import read_tender
     from ..intake.tender_folder import find_inputs
 
@@ -89,7 +96,20 @@ def read_everything(place: Path, bids: tuple[Path, ...]) -> Reading:
     tender, about_tender = read_tender(inputs.tender)
     with _progress(len(inputs.bids)) as advance:
         offers, about_bids = read_bids(inputs.bids, tender, advance)
-    return Reading(inputs, tender, offers, (*missing, *about_tender, *about_bids))
+    folder = inputs.tender.path.parent
+    further = [] if tender is None else list(linked_files(tender, inputs.tender))
+    decisions: tuple[Decision, ...] = ()
+    about_records: tuple[Finding, ...] = ()
+    rules = None
+    if (decision_file := find_decisions(folder)) is not None:
+        further.append(decision_file)
+        decisions, about_records = read_decisions(decision_file, tender, offers)
+    if (rules_file := find_published_rules(folder)) is not None:
+        further.append(rules_file)
+        rules, about_rules = read_published_rules(rules_file)
+        about_records = (*about_records, *about_rules)
+    findings = (*missing, *about_tender, *about_bids, *about_records)
+    return Reading(inputs, tender, offers, findings, decisions, rules, tuple(further))
 
 
 @contextmanager

@@ -6,7 +6,7 @@ import sys
 
 import click
 
-from . import check, evaluate, rates, start
+from . import check, evaluate, form, rates, rules, start
 from .exit_codes import run
 
 __all__ = ["lossworth", "main"]
@@ -23,6 +23,8 @@ A tender is a folder:
 First steps:
   lossworth start my-tender      a working example to edit, every key explained
   lossworth rates my-tender      A, B and C per lot, and the arithmetic behind them
+  lossworth rules my-tender      the rules to publish before opening, with their fingerprint
+  lossworth form my-tender       the workbook that bidders fill in
   lossworth check my-tender      read everything and report what is wrong, write nothing
   lossworth evaluate my-tender   rank the offers; write workbook, page and data
 
@@ -36,7 +38,7 @@ def lossworth() -> None:
     """Group of all commands; the help text stands in `_HELP`."""
 
 
-for command in (start.start, rates.rates, check.check, evaluate.evaluate):
+for command in (start.start, rates.rates, rules.rules, form.form, check.check, evaluate.evaluate):
     lossworth.add_command(command)
 
 

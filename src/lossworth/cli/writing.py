@@ -32,7 +32,7 @@ def refuse_existing(folder: Path, names: Iterable[str]) -> None:
         raise OutputExists(existing)
 
 
-def write_all(folder: Path, contents: Mapping[str, bytes]) -> None:
+def write_all(folder: Path, contents: Mapping[str, bytes], *, whole_folders: Iterable[str] = ()) -> None:
     """Write several files: first all beside their places, then all moved there.
 
     Parameters
@@ -40,7 +40,9 @@ def write_all(folder: Path, contents: Mapping[str, bytes]) -> None:
     folder : Path
         Made where it is missing.
     contents : mapping of str to bytes
-        By file name.
+        By file name, with forward slashes where it lies in a folder below.
+    whole_folders : iterable of str
+        Folders below that hold nothing but these contents: what an earlier run left in them is removed.
 
     Raises
     ------
@@ -50,8 +52,12 @@ def write_all(folder: Path, contents: Mapping[str, bytes]) -> None:
     folder.mkdir(parents=True, exist_ok=True)
     with tempfile.TemporaryDirectory(dir=folder, prefix=".writing-") as draft:
         for name, content in contents.items():
+            (Path(draft) / name).parent.mkdir(parents=True, exist_ok=True)
             (Path(draft) / name).write_bytes(content)
+        for below in whole_folders:
+            shutil.rmtree(folder / below, ignore_errors=True)
         for name in contents:
+            (folder / name).parent.mkdir(parents=True, exist_ok=True)
             (Path(draft) / name).replace(folder / name)
 
 

@@ -11,7 +11,7 @@ from ..records.quantity import Quantity
 from ..records.tender import LossBasis, Lot
 from ..trail import Figure, constant, difference, product, quotient, read, total
 from ..units import LOSS_UNITS
-from .identities import figure_id
+from .identities import figure_id, offer_id
 
 __all__ = ["OfferOnBasis", "loss_in_kw", "on_basis"]
 
@@ -64,10 +64,10 @@ def loss_in_kw(offer: Offer, name: str, label: str, loss: Quantity | None) -> Fi
     """
     if loss is None:
         return None
-    identity = _id(offer, name)
+    identity = offer_id(offer, name)
     if loss.unit == "kW":
         return read(identity, label, loss.value, "kW", loss.place)
-    stated = read(f"{identity}/as read", f"{label} as read", loss.stated, loss.unit, loss.place)
+    stated = read(f"{identity}/as stated", f"{label} as read", loss.stated, loss.unit, loss.place)
     size = LOSS_UNITS[loss.unit]
     if size > 1:
         times = f"kW in 1 {loss.unit}"
@@ -119,11 +119,7 @@ def _impedance(offer: Offer) -> Figure | None:
     stated = offer.impedance_percent
     if stated is None:
         return None
-    return read(_id(offer, "impedance_percent"), "impedance", stated.value, "%", stated.place)
-
-
-def _id(offer: Offer, *parts: str) -> str:
-    return figure_id(f"lot {offer.lot}", offer.bidder.value, *parts)
+    return read(offer_id(offer, "impedance_percent"), "impedance", stated.value, "%", stated.place)
 
 
 class _Work:
@@ -148,7 +144,7 @@ class _Work:
             self._question("load loss", "must be stated, and the tender does not derive it from the total loss",
                            quantity, question)  # fmt: skip
             return None
-        load = difference(_id(self.offer, "load_loss_kw"), "load loss from total loss", "kW", stated, no_load)
+        load = difference(offer_id(self.offer, "load_loss_kw"), "load loss from total loss", "kW", stated, no_load)
         self._assume("load loss", "the load loss is the stated total loss less the no-load loss", quantity)
         return load
 
@@ -173,11 +169,13 @@ class _Work:
                          "°C", "IEC 60076-1, from memory")  # fmt: skip
         target = read(figure_id(f"lot {self.lot.id}", "reference temperature"), "reference temperature of the tender",
                       wanted.value, "°C", wanted.place)  # fmt: skip
-        given = read(_id(offer, "reference_temperature_c"), "reference temperature as stated", stated.value, "°C",
+        given = read(offer_id(offer, "reference_temperature_c"), "reference temperature as stated", stated.value, "°C",
                      stated.place)  # fmt: skip
-        above = total(_id(offer, "resistance wanted"), "metal constant and wanted temperature", "°C", metal, target)
-        below = total(_id(offer, "resistance stated"), "metal constant and stated temperature", "°C", metal, given)
-        return quotient(_id(offer, "resistance ratio"), "ratio of resistances", "1", above, below)
+        above = total(
+            offer_id(offer, "resistance wanted"), "metal constant and wanted temperature", "°C", metal, target
+        )
+        below = total(offer_id(offer, "resistance stated"), "metal constant and stated temperature", "°C", metal, given)
+        return quotient(offer_id(offer, "resistance ratio"), "ratio of resistances", "1", above, below)
 
     def _corrected(self, load: Figure, ratio: Figure, stated: Quantity, wanted: Quantity) -> Figure:
         offer, label = self.offer, f"load loss at {wanted.value} °C"
@@ -186,14 +184,14 @@ class _Work:
         change = f"converted from {stated.value} to {wanted.value} °C for {self.basis.conductor}"
         if resistive is None or stray is None:
             self._assume("load loss", f"{change}, all of it taken as resistive: an estimate", stated)
-            return product(_id(offer, "load loss at temperature"), label, "kW", load, ratio)
+            return product(offer_id(offer, "load loss at temperature"), label, "kW", load, ratio)
         self._assume("load loss", f"{change}, resistive and stray part as the bidder splits them", stated)
         return total(
-            _id(offer, "load loss at temperature"),
+            offer_id(offer, "load loss at temperature"),
             label,
             "kW",
-            product(_id(offer, "resistive part"), "resistive part, converted", "kW", resistive, ratio),
-            quotient(_id(offer, "stray part"), "stray part, converted", "kW", stray, ratio),
+            product(offer_id(offer, "resistive part"), "resistive part, converted", "kW", resistive, ratio),
+            quotient(offer_id(offer, "stray part"), "stray part, converted", "kW", stray, ratio),
         )
 
     def at_rating(self, load: Figure | None, impedance: Figure | None) -> tuple[Figure | None, Figure | None]:
@@ -212,18 +210,18 @@ class _Work:
         offer = self.offer
         target = read(figure_id(f"lot {self.lot.id}", "loss rating"), "rating of the guarantee", wanted.value, "kVA",
                       wanted.place)  # fmt: skip
-        given = read(_id(offer, "load_loss_rating_kva"), "rating as stated", stated.value, "kVA", stated.place)
-        ratio = quotient(_id(offer, "rating ratio"), "ratio of ratings", "1", target, given)
+        given = read(offer_id(offer, "load_loss_rating_kva"), "rating as stated", stated.value, "kVA", stated.place)
+        ratio = quotient(offer_id(offer, "rating ratio"), "ratio of ratings", "1", target, given)
         self._assume(
             "load loss", f"load loss and impedance converted from {stated.value} to {wanted.value} kVA", stated
         )
         if load is not None:
             load = product(
-                _id(offer, "load loss at rating"), f"load loss at {wanted.value} kVA", "kW", load, ratio, ratio
+                offer_id(offer, "load loss at rating"), f"load loss at {wanted.value} kVA", "kW", load, ratio, ratio
             )
         if impedance is not None:
-            impedance = product(_id(offer, "impedance at rating"), f"impedance at {wanted.value} kVA", "%", impedance,
-                                ratio)  # fmt: skip
+            label = f"impedance at {wanted.value} kVA"
+            impedance = product(offer_id(offer, "impedance at rating"), label, "%", impedance, ratio)
         return load, impedance
 
     def _assume(self, field: str, statement: str, quantity: Quantity) -> None:

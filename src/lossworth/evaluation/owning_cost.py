@@ -8,14 +8,15 @@ from decimal import Decimal
 
 from ..money import Rounding
 from ..records.bid import Offer, is_naturally_cooled
-from ..records.tender import CoolingValuation, Lot, RoundingPoint, Rules
+from ..records.tender import CoolingValuation, Lot, RoundingPoint, Rules, Tender
 from ..trail import Figure, Rule, difference, product, rounded, total
-from .identities import figure_id
+from .identities import offer_id
 from .loss_basis import OfferOnBasis, loss_in_kw
-from .pricing import unit_price_in_evaluation_currency
+from .loss_tolerance import tolerance_factor, with_tolerance
+from .pricing import ItemsPrice, UnitPrice
 from .result import LotRates, OwningCost
 
-__all__ = ["CostBasis", "auxiliary_loss", "cooling_powers", "owning_cost"]
+__all__ = ["CostBasis", "OfferPrice", "auxiliary_loss", "cooling_powers", "owning_cost"]
 
 _PARTS = ("evaluated_price", "no_load_cost", "load_cost", "auxiliary_cost")
 _LABELS = {
@@ -28,14 +29,44 @@ _LABELS = {
 
 @dataclass(frozen=True, slots=True)
 class CostBasis:
-    """What all offers of a lot share: currency, rates, exchange rates, quantity and rounding."""
+    """What all offers of a lot share: the tender with its rules, rates, exchange rates and quantity."""
 
-    currency: str
+    tender: Tender
     lot: Lot
     rates: LotRates
     exchange_rates: Mapping[str, Figure]
     quantity: Figure
-    rules: Rules
+
+    @property
+    def currency(self) -> str:
+        """Evaluation currency."""
+        return self.tender.identity.currency.value
+
+    @property
+    def rules(self) -> Rules:
+        """Rounding and announced settings."""
+        return self.tender.rules
+
+
+@dataclass(frozen=True, slots=True)
+class OfferPrice:
+    """Price of an offer, exact: of one unit, and of the further items of the lot.
+
+    Parameters
+    ----------
+    unit : UnitPrice or None
+        None where it is not stated or cannot be brought to the evaluation currency and the delivered point.
+    items : ItemsPrice
+        Empty where no item counts.
+    """
+
+    unit: UnitPrice | None
+    items: ItemsPrice
+
+    @property
+    def has_margin(self) -> bool:
+        """Whether a preference margin lies on it."""
+        return self.items.margin is not None or (self.unit is not None and self.unit.margin is not None)
 
 
 def auxiliary_loss(offer: Offer, lot: Lot) -> Figure | None:
@@ -88,12 +119,14 @@ def _zero_by_rule(offer: Offer, lot: Lot, name: str, label: str) -> Figure | Non
     cooling = offer.cooling or lot.cooling
     if not is_naturally_cooled(cooling.value):
         return None
-    identity = figure_id(f"lot {offer.lot}", offer.bidder.value, name)
+    identity = offer_id(offer, name)
     rule = Rule(f"{cooling.value} needs no fans or pumps: a blank {label} is zero ({cooling.place})")
     return Figure(identity, label, Decimal(0), "kW", rule)
 
 
-def owning_cost(on_basis: OfferOnBasis, basis: CostBasis) -> tuple[OwningCost, OwningCost]:
+def owning_cost(
+    on_basis: OfferOnBasis, basis: CostBasis, price: OfferPrice, *, with_preference: bool = True
+) -> tuple[OwningCost, OwningCost]:
     """Total owning cost of one unit and of the lot.
 
     Parameters
@@ -102,6 +135,10 @@ def owning_cost(on_basis: OfferOnBasis, basis: CostBasis) -> tuple[OwningCost, O
         One offer with its losses on the tender's basis.
     basis : CostBasis
         What all offers of the lot share.
+    price : OfferPrice
+        Its price.
+    with_preference : bool
+        Whether a preference margin on the price counts.
 
     Returns
     -------
@@ -111,97 +148,139 @@ def owning_cost(on_basis: OfferOnBasis, basis: CostBasis) -> tuple[OwningCost, O
     Notes
     -----
     TOC = evaluated price + A P0 + B Pk + C Paux. Where the tender rounds each cost part per unit, the lot is quantity
-    times unit; where it rounds each part per lot, the parts of one unit stay exact. Where cooling is valued through
-    A and B: A (P0 + Pc0) + B (Pk + Pcs - Pc0) after IEC TS 60076-20 (from memory), and C does not act.
+    times unit, and further items are one more amount of the lot, rounded once; where it rounds each part per lot, the
+    parts of one unit stay exact. Amounts per unit are without further items. Where cooling is valued through A and B:
+    A (P0 + Pc0) + B (Pk + Pcs - Pc0) after IEC TS 60076-20 (from memory), and C does not act.
 
     References
     ----------
     .. [1] REA Bulletin 65-2 (1978) / RUS Bulletin 1724E-301 (1997), the form of the evaluation; A and B as in
        IEC TS 60076-20 and IEEE C57.120 (from memory).
     """
-    offer = on_basis.offer
-    factors = _factors(on_basis, basis)
-    per_unit_rule = basis.rules.rounding_applies_to is RoundingPoint.PART_PER_UNIT
-    unit_rounding = basis.rules.rounding if per_unit_rule else None
-    lot_rounding = None if per_unit_rule else basis.rules.rounding
-    unit: dict[str, Figure | None] = {}
-    lot: dict[str, Figure | None] = {}
-    for part in _PARTS:
-        unit[part] = _unit_part(offer, part, factors[part], basis, unit_rounding)
-        lot[part] = _lot_part(offer, part, unit[part], basis, lot_rounding)
-    counted = _PARTS if basis.rates.auxiliary is not None else _PARTS[:3]
-    unit["total_owning_cost"] = _sum(offer, "per unit", unit, counted, basis)
-    if per_unit_rule:
-        lot["total_owning_cost"] = _lot_part(offer, "total_owning_cost", unit["total_owning_cost"], basis, None)
-    else:
-        lot["total_owning_cost"] = _sum(offer, "lot", lot, counted, basis)
-    return OwningCost(**unit), OwningCost(**lot)
+    return _Sums(on_basis, basis, price, "" if with_preference else " without preference").costs()
 
 
-def _factors(on_basis: OfferOnBasis, basis: CostBasis) -> dict[str, tuple[Figure, ...] | None]:
-    offer, rates = on_basis.offer, basis.rates
-    no_load, load = on_basis.no_load_loss, on_basis.load_loss
-    if basis.lot.cooling_valuation is CoolingValuation.THROUGH_A_AND_B:
-        no_load, load = _with_cooling(on_basis, basis.lot)
+class _Sums:
+    """The amounts of one offer, with or without a preference margin on its price."""
 
-    def capitalized(rate: Figure | None, loss: Figure | None) -> tuple[Figure, ...] | None:
-        return None if rate is None or loss is None else (rate, loss)
+    def __init__(self, on_basis: OfferOnBasis, basis: CostBasis, price: OfferPrice, variant: str) -> None:
+        self.on_basis, self.offer, self.basis, self.price = on_basis, on_basis.offer, basis, price
+        self.variant, self.with_margin = variant, not variant
+        self.per_unit_rule = basis.rules.rounding_applies_to is RoundingPoint.PART_PER_UNIT
+        self.counted = _PARTS if basis.rates.auxiliary is not None else _PARTS[:3]
 
-    return {
-        "evaluated_price": unit_price_in_evaluation_currency(offer, basis.currency, basis.exchange_rates),
-        "no_load_cost": capitalized(rates.no_load, no_load),
-        "load_cost": capitalized(rates.load, load),
-        "auxiliary_cost": capitalized(rates.auxiliary, auxiliary_loss(offer, basis.lot)),
-    }
+    def costs(self) -> tuple[OwningCost, OwningCost]:
+        """Amounts of one unit and of the lot."""
+        unit, lot = self._unit(), {}
+        lot["evaluated_price"] = self._lot_price(unit["evaluated_price"])
+        for part in _PARTS[1:]:
+            lot[part] = self._lot_part(part, unit[part], None if self.per_unit_rule else self.basis.rules.rounding)
+        unit["total_owning_cost"] = self._sum("per unit", unit)
+        if self.per_unit_rule and not self._items() and self.price.items.is_complete:
+            lot["total_owning_cost"] = self._lot_part("total_owning_cost", unit["total_owning_cost"], None)
+        else:
+            lot["total_owning_cost"] = self._sum("lot", lot)
+        return OwningCost(**unit), OwningCost(**lot)
 
+    def _id(self, scope: str, part: str) -> str:
+        return offer_id(self.offer, f"{scope}{self.variant}", part)
 
-def _with_cooling(on_basis: OfferOnBasis, lot: Lot) -> tuple[Figure | None, Figure | None]:
-    """No-load and load loss with the cooling power of each stage."""
-    offer, no_load, load = on_basis.offer, on_basis.no_load_loss, on_basis.load_loss
-    at_no_load, at_rated = cooling_powers(offer, lot)
-    if no_load is None or load is None or at_no_load is None or at_rated is None:
-        return None, None
+    def _items(self) -> tuple[Figure, ...]:
+        items = self.price.items
+        return (*items.amounts, items.margin) if items.margin is not None and self.with_margin else items.amounts
 
-    def name(part: str) -> str:
-        return figure_id(f"lot {offer.lot}", offer.bidder.value, part)
+    # Per unit
 
-    first = total(name("no-load loss with cooling"), "no-load loss with cooling, P0 + Pc0", "kW", no_load, at_no_load)
-    more = difference(name("cooling power above no load"), "cooling power Pcs - Pc0", "kW", at_rated, at_no_load)
-    second = total(name("load loss with cooling"), "load loss with cooling, Pk + Pcs - Pc0", "kW", load, more)
-    return first, second
+    def _unit(self) -> dict[str, Figure | None]:
+        rounding = self.basis.rules.rounding if self.per_unit_rule else None
+        factors = self._loss_factors()
+        parts: dict[str, Figure | None] = {"evaluated_price": self._unit_price(rounding)}
+        for part in _PARTS[1:]:
+            parts[part] = self._unit_cost(part, factors[part], rounding)
+        return parts
 
+    def _unit_price(self, rounding: Rounding | None) -> Figure | None:
+        price = self.price.unit
+        if price is None:
+            return None
+        identity, label = self._id("per unit", "evaluated_price"), f"{_LABELS['evaluated_price']} per unit"
+        adders = price.adders if price.margin is None or not self.with_margin else (*price.adders, price.margin)
+        if adders:
+            return total(identity, label, self.basis.currency, price.price, *adders, rounding=rounding)
+        return self._product(identity, label, price.factors, rounding)
 
-def _unit_part(
-    offer: Offer, part: str, factors: tuple[Figure, ...] | None, basis: CostBasis, rounding: Rounding | None
-) -> Figure | None:
-    identity = figure_id(f"lot {offer.lot}", offer.bidder.value, "per unit", part)
-    label = f"{_LABELS[part]} per unit"
-    if part == "auxiliary_cost" and basis.rates.auxiliary is None:
-        zero = basis.rules.rounding.apply(Decimal(0))
-        return Figure(identity, label, zero, basis.currency, Rule("the tender values no auxiliary loss in this lot"))
-    if factors is None:
-        return None
-    if len(factors) == 1 and rounding is not None:
-        return rounded(identity, label, factors[0], rounding)
-    return product(identity, label, basis.currency, *factors, rounding=rounding)
+    def _unit_cost(self, part: str, factors: tuple[Figure, ...] | None, rounding: Rounding | None) -> Figure | None:
+        identity, label = self._id("per unit", part), f"{_LABELS[part]} per unit"
+        if part == "auxiliary_cost" and self.basis.rates.auxiliary is None:
+            zero, currency = self.basis.rules.rounding.apply(Decimal(0)), self.basis.currency
+            return Figure(identity, label, zero, currency, Rule("the tender values no auxiliary loss in this lot"))
+        return None if factors is None else self._product(identity, label, factors, rounding)
 
+    def _product(self, identity: str, label: str, factors: tuple[Figure, ...], rounding: Rounding | None) -> Figure:
+        if len(factors) == 1 and rounding is not None:
+            return rounded(identity, label, factors[0], rounding)
+        return product(identity, label, self.basis.currency, *factors, rounding=rounding)
 
-def _lot_part(
-    offer: Offer, part: str, per_unit: Figure | None, basis: CostBasis, rounding: Rounding | None
-) -> Figure | None:
-    if per_unit is None:
-        return None
-    identity = figure_id(f"lot {offer.lot}", offer.bidder.value, "lot", part)
-    label = f"{_LABELS.get(part, 'total owning cost')} of the lot"
-    return product(identity, label, basis.currency, basis.quantity, per_unit, rounding=rounding)
+    def _loss_factors(self) -> dict[str, tuple[Figure, ...] | None]:
+        rates, tolerance = self.basis.rates, tolerance_factor(self.offer, self.basis.tender)
+        no_load = with_tolerance(self.on_basis.no_load_loss, tolerance)
+        load = with_tolerance(self.on_basis.load_loss, tolerance)
+        if self.basis.lot.cooling_valuation is CoolingValuation.THROUGH_A_AND_B:
+            no_load, load = self._with_cooling(no_load, load, tolerance)
+        auxiliary = with_tolerance(auxiliary_loss(self.offer, self.basis.lot), tolerance)
 
+        def capitalized(rate: Figure | None, loss: Figure | None) -> tuple[Figure, ...] | None:
+            return None if rate is None or loss is None else (rate, loss)
 
-def _sum(
-    offer: Offer, scope: str, parts: Mapping[str, Figure | None], counted: tuple[str, ...], basis: CostBasis
-) -> Figure | None:
-    present = [figure for name in counted if (figure := parts[name]) is not None]
-    if len(present) < len(counted):
-        return None
-    identity = figure_id(f"lot {offer.lot}", offer.bidder.value, scope, "total_owning_cost")
-    label = f"total owning cost {'per unit' if scope == 'per unit' else 'of the lot'}"
-    return total(identity, label, basis.currency, *present)
+        return {
+            "no_load_cost": capitalized(rates.no_load, no_load),
+            "load_cost": capitalized(rates.load, load),
+            "auxiliary_cost": capitalized(rates.auxiliary, auxiliary),
+        }
+
+    def _with_cooling(
+        self, no_load: Figure | None, load: Figure | None, tolerance: Figure | None
+    ) -> tuple[Figure | None, Figure | None]:
+        """No-load and load loss with the cooling power of each stage."""
+        powers = cooling_powers(self.offer, self.basis.lot)
+        at_no_load, at_rated = (with_tolerance(power, tolerance) for power in powers)
+        if no_load is None or load is None or at_no_load is None or at_rated is None:
+            return None, None
+        first = total(offer_id(self.offer, "no-load loss with cooling"), "no-load loss with cooling, P0 + Pc0", "kW",
+                      no_load, at_no_load)  # fmt: skip
+        more = difference(offer_id(self.offer, "cooling power above no load"), "cooling power Pcs - Pc0", "kW",
+                          at_rated, at_no_load)  # fmt: skip
+        second = total(offer_id(self.offer, "load loss with cooling"), "load loss with cooling, Pk + Pcs - Pc0", "kW",
+                       load, more)  # fmt: skip
+        return first, second
+
+    # Whole lot
+
+    def _lot_price(self, per_unit: Figure | None) -> Figure | None:
+        """Quantity times unit, and the further items: as amounts of the lot they are rounded once."""
+        if per_unit is None or not self.price.items.is_complete:
+            return None
+        rounding, items = self.basis.rules.rounding, self._items()
+        if not items:
+            return self._lot_part("evaluated_price", per_unit, None if self.per_unit_rule else rounding)
+        identity, label = self._id("lot", "evaluated_price"), f"{_LABELS['evaluated_price']} of the lot"
+        currency = self.basis.currency
+        units = product(f"{identity}/units", "price of all units", currency, self.basis.quantity, per_unit)
+        if not self.per_unit_rule:
+            return total(identity, label, currency, units, *items, rounding=rounding)
+        further = total(f"{identity}/items", "further items of the lot", currency, *items, rounding=rounding)
+        return total(identity, label, currency, units, further)
+
+    def _lot_part(self, part: str, per_unit: Figure | None, rounding: Rounding | None) -> Figure | None:
+        if per_unit is None:
+            return None
+        label = f"{_LABELS.get(part, 'total owning cost')} of the lot"
+        currency, quantity = self.basis.currency, self.basis.quantity
+        return product(self._id("lot", part), label, currency, quantity, per_unit, rounding=rounding)
+
+    def _sum(self, scope: str, parts: Mapping[str, Figure | None]) -> Figure | None:
+        present = [figure for name in self.counted if (figure := parts[name]) is not None]
+        if len(present) < len(self.counted):
+            return None
+        label = f"total owning cost {'per unit' if scope == 'per unit' else 'of the lot'}"
+        return total(self._id(scope, "total_owning_cost"), label, self.basis.currency, *present)

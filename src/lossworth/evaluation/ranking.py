@@ -1,15 +1,18 @@
-"""Ranks and margins: decided on rounded decimal money, ties kept as ties."""
+"""Ranks and margins: decided on rounded decimal money; ties stay ties unless the announced order parts them."""
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from bisect import bisect_left
+from collections.abc import Callable, Sequence
 from dataclasses import replace
 from decimal import Decimal
+from itertools import groupby
 
 from ..money import ARITHMETIC
 from ..trail import Figure, difference
-from .identities import figure_id
+from .identities import offer_id
 from .result import EvaluatedOffer, LotRates, Margin, Status
+from .ties import TieOrder
 
 __all__ = ["competition_ranks", "rank_offers"]
 
@@ -37,7 +40,9 @@ def competition_ranks(amounts: Sequence[Decimal]) -> tuple[int, ...]:
     return tuple(first[amount] for amount in amounts)
 
 
-def rank_offers(offers: Sequence[EvaluatedOffer], rates: LotRates, quantity: Figure) -> tuple[EvaluatedOffer, ...]:
+def rank_offers(
+    offers: Sequence[EvaluatedOffer], rates: LotRates, quantity: Figure, order: TieOrder | None = None
+) -> tuple[EvaluatedOffer, ...]:
     """Offers in the order in which papers list them, with ranks and margins.
 
     Parameters
@@ -48,44 +53,67 @@ def rank_offers(offers: Sequence[EvaluatedOffer], rates: LotRates, quantity: Fig
         To express a margin in kW.
     quantity : Figure
         Units of the lot.
+    order : TieOrder, optional
+        The announced order of ties; without one they stay ties.
 
     Returns
     -------
     tuple of EvaluatedOffer
         Ranked by total owning cost of the lot, then non-responsive, then not evaluated; equals by name.
     """
-    ranked = sorted(
-        (offer for offer in offers if offer.status is Status.RANKED), key=lambda o: (_total(o).value, o.bidder)
-    )
+    order = order or TieOrder((), {})
+    in_play = [offer for offer in offers if offer.status is Status.RANKED]
     others = sorted(
         (offer for offer in offers if offer.status is not Status.RANKED),
-        key=lambda o: (o.status is Status.NOT_EVALUATED, o.bidder),
+        key=lambda o: (o.status is Status.NOT_EVALUATED, o.name),
     )
-    ranks = competition_ranks([_total(offer).value for offer in ranked])
-    placed = [
+    placed = _placed(in_play, order, lambda offer: _total(offer).value)
+    without = {
+        offer.name: rank for offer, rank, _ in _placed(in_play, order, lambda offer: _without_preference(offer).value)
+    }
+    ranked = [offer for offer, _, _ in placed]
+    totals = [_total(offer).value for offer in ranked]
+    finished = [
         replace(
             offer,
             rank=rank,
-            above_winner=_total(offer).value - _total(ranked[0]).value,
-            margin=_margin(offer, _rival(position, ranked), ranked[0], rates, quantity),
+            tie_decided_by=decided,
+            rank_without_preference=None if offer.total_without_preference is None else without[offer.name],
+            above_winner=totals[position] - totals[0],
+            margin=_margin(offer, _rival(position, ranked, totals), ranked[0], rates, quantity),
         )
-        for position, (offer, rank) in enumerate(zip(ranked, ranks, strict=True))
+        for position, (offer, rank, decided) in enumerate(placed)
     ]
-    return (*placed, *others)
+    return (*finished, *others)
+
+
+def _placed(
+    offers: Sequence[EvaluatedOffer], order: TieOrder, amount: Callable[[EvaluatedOffer], Decimal]
+) -> list[tuple[EvaluatedOffer, int, str | None]]:
+    """Offers by amount, each with its rank and the criterion that parts it from others of the same amount."""
+    placed: list[tuple[EvaluatedOffer, int, str | None]] = []
+    for _, same in groupby(sorted(offers, key=lambda offer: (amount(offer), offer.name)), key=amount):
+        before = len(placed)
+        placed += [(tied.offer, before + tied.place, tied.decided_by) for tied in order.apart(list(same))]
+    return placed
+
+
+def _without_preference(offer: EvaluatedOffer) -> Figure:
+    return offer.total_without_preference or _total(offer)
 
 
 def _total(offer: EvaluatedOffer) -> Figure:
     figure = offer.lot.total_owning_cost
     if figure is None:
-        raise ValueError(f"{offer.bidder} is ranked without a total")
+        raise ValueError(f"{offer.name} is ranked without a total")
     return figure
 
 
-def _rival(position: int, ranked: Sequence[EvaluatedOffer]) -> EvaluatedOffer | None:
+def _rival(position: int, ranked: Sequence[EvaluatedOffer], totals: Sequence[Decimal]) -> EvaluatedOffer | None:
     """The nearest other offer that is not cheaper; for the members of a tie one another."""
-    own = _total(ranked[position]).value
-    rivals = [offer for place, offer in enumerate(ranked) if place != position and _total(offer).value >= own]
-    return min(rivals, key=lambda offer: _total(offer).value, default=None)
+    first = bisect_left(totals, totals[position])
+    rival = position + 1 if position == first else first
+    return ranked[rival] if rival < len(ranked) else None
 
 
 def _margin(
@@ -93,10 +121,9 @@ def _margin(
 ) -> Margin | None:
     if rival is None:
         return None
-    lot = offer.offer.lot.value
     amount = difference(
-        figure_id(f"lot {lot}", offer.bidder, "margin"),
-        f"margin to {rival.bidder}",
+        offer_id(offer.offer, "margin"),
+        f"margin to {rival.name}",
         _total(offer).unit,
         _total(rival),
         _total(offer),
@@ -108,4 +135,4 @@ def _margin(
 
     lowest = _total(winner).value
     percent = ARITHMETIC.divide(100 * amount.value, lowest) if lowest else Decimal(0)
-    return Margin(rival.bidder, amount, percent, in_kw(rates.no_load), in_kw(rates.load))
+    return Margin(rival.name, amount, percent, in_kw(rates.no_load), in_kw(rates.load))

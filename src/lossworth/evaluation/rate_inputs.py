@@ -191,8 +191,10 @@ def _mean_of_blocks(naming: Naming, economics: Economics, joined: LoadAndPrice, 
             continue  # a later block of the same price holds the hours of both
         hours_value = to_decimal(float(joined.hours[prices == price_value].sum()))
         name = f"block {block.name}"
-        hours = naming.by_rule(f"{name} hours", hours_value, "h/year", f"hours of the profile's year ({block.place})")
-        price = naming.stated(f"{name} price", block.price_per_kwh, unit)
+        hours = naming.by_rule(
+            f"hours of block {block.name}", hours_value, "h/year", f"hours of the profile's year ({block.place})"
+        )
+        price = naming.stated(f"price of block {block.name}", block.price_per_kwh, unit)
         hours_of_blocks.append(hours)
         parts.append(product(naming.id(name), f"price times hours, {block.name}", f"{unit} h", hours, price))
     everything = total(naming.id("block hours"), "hours of all blocks", "h/year", *hours_of_blocks)
@@ -281,7 +283,7 @@ def loading_inputs(
         ("peak_load_growth_percent", "%/year", Decimal(0), "the peak load does not grow"),
         ("peak_responsibility_factor", "1", Decimal(1), "without effect where there is no demand charge"),
         ("hours_energized", "h/year", _HOURS, "energized all year"),
-        ("cooling_hours", "h/year", Decimal(0), "no auxiliary loss is valued by hours"),
+        ("cooling_hours", "h/year", Decimal(0), _silence_on_cooling(loading)),
         ("cooling_share_at_peak", "1", Decimal(0), "without effect where there is no demand charge"),
     ):
         inputs[name] = naming.or_default(name, getattr(loading, name), unit, default, silence)
@@ -291,6 +293,10 @@ def loading_inputs(
         naming.id("hours_of_load"), naming.label("hours_of_load"), _HOURS, "h/year", "hours of a year"
     )
     return inputs
+
+
+def _silence_on_cooling(loading: LoadingCondition) -> str:
+    return "the cooling stages follow the load" if loading.cooling_stages else "no auxiliary loss is valued by hours"
 
 
 def _peak_load(naming: Naming, loading: LoadingCondition, lot: Lot) -> dict[str, Figure]:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from decimal import Decimal
+from fractions import Fraction
 
 from ..findings import Finding, Place
 from ..money import ARITHMETIC
@@ -11,9 +12,10 @@ from ..records.bid import Offer
 from ..records.quantity import Quantity
 from ..records.tender import Lot
 from ..trail import Figure
+from .identities import is_one_of
 from .loss_basis import OfferOnBasis
 
-__all__ = ["CHECKS", "check_offer", "peak_efficiency_index_percent"]
+__all__ = ["CHECKS", "check_offer", "is_index_kept", "peak_efficiency_index_percent"]
 
 Check = Callable[[OfferOnBasis, Lot], Finding | None]
 
@@ -105,14 +107,35 @@ def check_load_loss(offer: OfferOnBasis, lot: Lot) -> Finding | None:
     return _check_maximum(offer, lot.maximum_load_loss_kw, offer.load_loss, "load_loss_kw", names)
 
 
+def is_index_kept(
+    no_load_loss_kw: Decimal, load_loss_kw: Decimal, rated_power_kva: Decimal, limit_percent: Decimal
+) -> bool:
+    """Whether the peak efficiency index that follows from two losses is at least a limit; without any rounding.
+
+    Parameters
+    ----------
+    no_load_loss_kw, load_loss_kw : Decimal
+        Guaranteed losses, the no-load loss with the cooling power needed at no load. [kW]
+    rated_power_kva : Decimal
+        Rating on which the load loss is based. [kVA]
+    limit_percent : Decimal
+        Least index. [percent]
+
+    Returns
+    -------
+    bool
+        Compared as squares, which are exact: P0 Pk <= ((1 - PEI) Sr / 2)^2.
+    """
+    half = Fraction(100 - Fraction(limit_percent)) * Fraction(rated_power_kva) / 200
+    return Fraction(no_load_loss_kw) * Fraction(load_loss_kw) <= half * half
+
+
 def check_peak_efficiency_index(offer: OfferOnBasis, lot: Lot) -> Finding | None:
     """Peak efficiency index that follows from the guaranteed losses at least the lot's minimum."""
     limit, no_load, load = lot.minimum_peak_efficiency_index_percent, offer.no_load_loss, offer.load_loss
     if limit is None or no_load is None or load is None:
         return None
-    # compared as squares, which are exact: P0 Pk <= ((1 - PEI) Sr / 2)^2
-    half = (100 - limit.value) * lot.rated_power_kva.value / 200
-    if no_load.value * load.value <= half * half:
+    if is_index_kept(no_load.value, load.value, lot.rated_power_kva.value, limit.value):
         return None
     index = peak_efficiency_index_percent(no_load.value, load.value, lot.rated_power_kva.value)
     rule = f"must be at least {limit.value} % ({limit.place})"
@@ -154,10 +177,55 @@ def check_delivery(offer: OfferOnBasis, lot: Lot) -> Finding | None:
     return _finding("delivery-too-late", "delivery", rule, offer.offer, place, f"{stated.text} {stated.unit}")
 
 
+def check_sound_level(offer: OfferOnBasis, lot: Lot) -> Finding | None:
+    """Guaranteed sound level at most the lot's maximum."""
+    limit, stated = lot.maximum_sound_level_db, offer.offer.terms.sound_level_db
+    if limit is None:
+        return None
+    rule = f"must not exceed {limit.value} dB ({limit.place})"
+    place = _place(offer.offer, stated, "sound_level_db")
+    if stated is None:
+        return _finding("limit-not-answered", "sound level", rule, offer.offer, place, None)
+    if stated.value <= limit.value:
+        return None
+    return _finding(
+        "sound-level-above-maximum", "sound level", rule, offer.offer, place, f"{stated.text} {stated.unit}"
+    )
+
+
+def check_insulating_liquid(offer: OfferOnBasis, lot: Lot) -> Finding | None:
+    """Insulating liquid one of those that the lot accepts."""
+    if not lot.accepted_liquids:
+        return None
+    stated = offer.offer.terms.insulating_liquid
+    rule = f"must be one of {', '.join(lot.accepted_liquids)} ({lot.place})"
+    if stated is None:
+        place = offer.offer.columns.get("insulating_liquid", offer.offer.place)
+        return _finding("limit-not-answered", "insulating liquid", rule, offer.offer, place, None)
+    if is_one_of(stated.value, lot.accepted_liquids):
+        return None
+    return _finding("liquid-not-accepted", "insulating liquid", rule, offer.offer, stated.place, stated.value)
+
+
+def check_pcb_free(offer: OfferOnBasis, lot: Lot) -> Finding | None:
+    """Declaration that the liquid is free of PCB, where the lot requires it."""
+    declared = offer.offer.terms.pcb_free
+    if not lot.pcb_free_required or declared is True:
+        return None
+    rule = f"must be declared ({lot.place})"
+    place = offer.offer.columns.get("pcb_free", offer.offer.place)
+    if declared is None:
+        return _finding("limit-not-answered", "freedom from PCB", rule, offer.offer, place, None)
+    return _finding("pcb-free-not-declared", "freedom from PCB", rule, offer.offer, place, "no")
+
+
 CHECKS: tuple[Check, ...] = (
     check_no_load_loss,
     check_load_loss,
     check_peak_efficiency_index,
     check_impedance,
     check_delivery,
+    check_sound_level,
+    check_insulating_liquid,
+    check_pcb_free,
 )

@@ -6,12 +6,14 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 from decimal import Decimal
 from enum import StrEnum
+from typing import Literal
 
 import numpy as np
 from numpy.typing import NDArray
 
 from ..findings import Finding
 from ..records.bid import Offer
+from ..records.decision import Decision
 from ..records.profile import Profile
 from ..records.tender import Lot, Tender
 from ..trail import Figure
@@ -20,6 +22,7 @@ from .loss_basis import OfferOnBasis
 __all__ = [
     "Basis",
     "CoolingByYear",
+    "Correction",
     "EvaluatedOffer",
     "Evaluation",
     "Information",
@@ -28,6 +31,7 @@ __all__ = [
     "LotRates",
     "Margin",
     "OwningCost",
+    "PriceStep",
     "StageHours",
     "Status",
     "YearTable",
@@ -190,8 +194,108 @@ class Margin:
 
 
 @dataclass(frozen=True, slots=True)
+class Correction:
+    """A value as read and the value that takes its place: the first two of three layers, neither overwritten.
+
+    The third layer, the value as evaluated, is what `EvaluatedOffer.on_basis` and the amounts are made of.
+
+    Parameters
+    ----------
+    field : str
+        Name of the value in the records: ``"unit_price"``, ``"total_price"``, ``"load_loss_kw"``.
+    as_read, corrected : Figure
+        Both values, each with where it comes from.
+    rule : str
+        The announced rule that corrects, in a sentence.
+    reason : str
+        What is wrong with the value as read.
+    decision : Decision or None
+        The bidder's recorded answer or confirmation, where there is one.
+    """
+
+    field: str
+    as_read: Figure
+    corrected: Figure
+    rule: str
+    reason: str
+    decision: Decision | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class PriceStep:
+    """One step from the quoted to the evaluated price.
+
+    Parameters
+    ----------
+    name : str
+        ``"quoted"``, ``"corrected"``, ``"unconditional discount"``, ``"prompt payment discount"``, ``"currency"``,
+        ``"tax"``, ``"delivered point"``, ``"payment terms"``, ``"delivery time"``, ``"site cost"``, ``"preference"``,
+        ``"evaluated"`` in this order per unit; then, per lot, ``"item"``, ``"missing item"``, ``"payment terms"``,
+        ``"preference"`` and ``"evaluated"`` again, where the lot has further items that count.
+    label : str
+        What the step does, in the trade's words.
+    scope : str
+        Whether the amounts hold for one unit or for the lot.
+    sign : str
+        How the change acts on the price before it; empty for a price that stands by itself.
+    change : Figure or None
+        What is added, taken away, multiplied or divided by.
+    price : Figure
+        The price after the step, exact; rounded only in the last step.
+    rule : str
+        Why, with the place of the announced rule or adder.
+    """
+
+    name: str
+    label: str
+    scope: Literal["unit", "lot"]
+    sign: Literal["", "+", "−", "×", "÷"]
+    change: Figure | None
+    price: Figure
+    rule: str
+
+
+@dataclass(frozen=True, slots=True)
 class EvaluatedOffer:
-    """One offer with its costs, its status and, where it is ranked, its rank and margin."""
+    """One offer with its costs, its status and, where it is ranked, its rank and margin.
+
+    Parameters
+    ----------
+    on_basis : OfferOnBasis
+        Guaranteed values as evaluated; its offer has confirmed values in place of those read.
+    status : Status
+        What became of it.
+    per_unit, lot : OwningCost
+        Amounts. Further items of the lot are part of the lot's evaluated price alone. [currency]
+    findings : tuple of Finding
+        All findings on the offer, waived ones as notes.
+    information : tuple of Information
+        Facts beside the money.
+    rank : int or None
+        1 for the lowest total owning cost; equal amounts share a rank unless the announced tie order parts them.
+    margin : Margin or None
+        To the nearest rival that is not cheaper.
+    above_winner : Decimal or None
+        Total owning cost of the lot less the lowest one.
+    as_read : Offer or None
+        The offer as read, where a confirmed value replaces one of its values.
+    corrections : tuple of Correction
+        Values that were corrected or confirmed.
+    price_steps : tuple of PriceStep
+        From the quoted to the evaluated price; empty where the price is not stated.
+    contract_price : Figure or None
+        What would be paid for the lot: corrected and less unconditional discounts, with the items that count and that
+        the bidder prices; no adder, no margin, no price of others. Rounded once. [currency of the offer]
+    total_without_preference : Figure or None
+        Total owning cost of the lot without a preference margin; None where the tender applies none.
+    rank_without_preference : int or None
+        Rank by these totals, the announced tie order applied to their ties.
+    tie_decided_by : str or None
+        Criterion of the tie order that parts the offer from the one before it (the first: from the one behind it) at
+        the same total; None where no tie was broken.
+    decisions : tuple of Decision
+        Recorded decisions that took effect on the offer.
+    """
 
     on_basis: OfferOnBasis
     status: Status
@@ -202,16 +306,29 @@ class EvaluatedOffer:
     rank: int | None = None
     margin: Margin | None = None
     above_winner: Decimal | None = None
+    as_read: Offer | None = None
+    corrections: tuple[Correction, ...] = ()
+    price_steps: tuple[PriceStep, ...] = ()
+    contract_price: Figure | None = None
+    total_without_preference: Figure | None = None
+    rank_without_preference: int | None = None
+    tie_decided_by: str | None = None
+    decisions: tuple[Decision, ...] = ()
 
     @property
     def offer(self) -> Offer:
         """The offer as read."""
-        return self.on_basis.offer
+        return self.as_read or self.on_basis.offer
 
     @property
     def bidder(self) -> str:
         """Name of the bidder as read."""
         return self.offer.bidder.value
+
+    @property
+    def name(self) -> str:
+        """Name of the offer: the bidder, and the alternative where it is one."""
+        return self.offer.name
 
 
 @dataclass(frozen=True, slots=True)
@@ -236,9 +353,10 @@ class LotEvaluation:
 
 @dataclass(frozen=True, slots=True)
 class Evaluation:
-    """The whole evaluation of a tender."""
+    """The whole evaluation of a tender, its profile of rules settled, with all decisions that were recorded."""
 
     tender: Tender
     lots: tuple[LotEvaluation, ...]
     exchange_rates: Mapping[str, Figure]
     findings: tuple[Finding, ...]
+    decisions: tuple[Decision, ...] = ()

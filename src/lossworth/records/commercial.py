@@ -143,8 +143,8 @@ class RegulationLimit(Record):
     regulation : str
         ``"EU 548/2014"`` or ``"US 10 CFR 431"``.
     equipment : Entry
-        Row of the regulation: ``"liquid medium"``, ``"dry medium"``, ``"pole-mounted replacement"``, ``"large liquid"``,
-        ``"large dry"``; or the equipment of the US tables.
+        Row of the regulation: ``"liquid medium"``, ``"dry medium"``, ``"pole-mounted replacement"``, ``"large
+        liquid"``, ``"large dry"``; or the equipment of the US tables.
     tier : int or None
         Tier of the EU regulation.
     date : datetime.date or None

@@ -10,7 +10,10 @@ from pydantic import Field
 from ..findings import Place
 from .quantity import AtLeast0, Entry, Record, WholeNumber
 
-__all__ = ["RULE_KINDS", "AnnouncedRules", "RuleKind", "TieBreaker", "setting_sentence"]
+__all__ = ["PUBLISHED_RULES", "RULE_KINDS", "AnnouncedRules", "RuleKind", "TieBreaker", "setting_sentence"]
+
+#: Name of the file in which the rules are kept as published, beside the tender file.
+PUBLISHED_RULES = "published_rules.json"
 
 TieBreaker = Literal["lower no-load loss", "lower evaluated price", "earlier delivery", "drawing of lots"]
 

@@ -19,11 +19,14 @@ from ..evaluation.result import (
     Status,
     YearTable,
 )
+from ..evaluation.rules_proof import RulesProof
 from ..findings import KINDS, Effect, Finding, one_line
 from ..records.bid import Offer
 from ..records.quantity import Quantity
 from ..records.tender import Lot, Tender
 from ..trail import Figure
+from .build_price_view import correction_views, decision_sentence, price_roots, price_step_views
+from .build_record_view import decision_views, rules_proof_view
 from .figure_text import shown_figures
 from .formats import as_stated
 from .view import (
@@ -73,7 +76,7 @@ _COLUMNS = (
 _SIX_DIGITS = Context(prec=6, rounding=ROUND_HALF_UP)
 
 
-def build_view(evaluation: Evaluation, record: RecordView) -> EvaluationView:
+def build_view(evaluation: Evaluation, record: RecordView, proof: RulesProof | None = None) -> EvaluationView:
     """View of an evaluation, from which every paper is made.
 
     Parameters
@@ -82,6 +85,8 @@ def build_view(evaluation: Evaluation, record: RecordView) -> EvaluationView:
         The result.
     record : RecordView
         Versions and fingerprints, which come from outside.
+    proof : RulesProof or None
+        Comparison with the rules as published; None where no file was kept.
 
     Returns
     -------
@@ -107,6 +112,8 @@ def build_view(evaluation: Evaluation, record: RecordView) -> EvaluationView:
         findings=tuple(_finding(finding) for finding in evaluation.findings),
         record=record,
         figures=shown_figures(_roots(evaluation), currency),
+        rules_proof=rules_proof_view(proof),
+        decisions=decision_views(evaluation.decisions),
     )
 
 
@@ -121,6 +128,7 @@ def _roots(evaluation: Evaluation) -> Iterable[Figure]:
                 yield from (figure for figure in _amounts(cost) if figure is not None)
             if offer.margin is not None:
                 yield offer.margin.amount
+            yield from price_roots(offer)
 
 
 def _amounts(cost: OwningCost) -> tuple[Figure | None, ...]:
@@ -129,12 +137,12 @@ def _amounts(cost: OwningCost) -> tuple[Figure | None, ...]:
 
 def _entering(offer: EvaluatedOffer, lot: LotEvaluation) -> dict[str, Figure | None]:
     """The figures of an offer that enter its costs."""
-    read = offer.offer
+    used = offer.on_basis.offer
     return {
-        "unit_price": quoted_price(read),
+        "unit_price": quoted_price(used),
         "no_load_loss": offer.on_basis.no_load_loss,
         "load_loss": offer.on_basis.load_loss,
-        "auxiliary_loss": None if lot.rates.auxiliary is None else auxiliary_loss(read, lot.lot),
+        "auxiliary_loss": None if lot.rates.auxiliary is None else auxiliary_loss(used, lot.lot),
     }
 
 
@@ -244,7 +252,7 @@ def _offer(offer: EvaluatedOffer, lot: LotEvaluation, evaluation: Evaluation) ->
     exchange = evaluation.exchange_rates.get(currency)
     tied = sum(other.rank == offer.rank for other in lot.ranked) > 1
     return OfferView(
-        bidder=one_line(offer.bidder),
+        bidder=one_line(offer.name),
         status=offer.status.value,
         rank=offer.rank,
         rank_text="–" if offer.rank is None else f"{offer.rank} =" if tied else str(offer.rank),
@@ -262,6 +270,13 @@ def _offer(offer: EvaluatedOffer, lot: LotEvaluation, evaluation: Evaluation) ->
         reasons=() if offer.status is Status.RANKED else tuple(_reasons(offer.findings)),
         assumptions=tuple(one_line(text) for text in offer.on_basis.assumptions),
         information=tuple(_fact(fact) for fact in offer.information),
+        corrections=correction_views(offer),
+        price_steps=price_step_views(offer),
+        contract_price=None if offer.contract_price is None else offer.contract_price.id,
+        total_without_preference=None if offer.total_without_preference is None else offer.total_without_preference.id,
+        rank_without_preference=offer.rank_without_preference,
+        tie_decided_by=offer.tie_decided_by or "",
+        decisions=tuple(decision_sentence(decision) for decision in offer.decisions),
     )
 
 

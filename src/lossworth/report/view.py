@@ -8,7 +8,9 @@ from decimal import Decimal
 
 __all__ = [
     "CoolingStageView",
+    "CorrectionView",
     "CostView",
+    "DecisionView",
     "EvaluationView",
     "ExchangeView",
     "Fact",
@@ -20,9 +22,12 @@ __all__ = [
     "MarginView",
     "OfferView",
     "Particular",
+    "PriceStepView",
     "RatesReport",
     "RatesView",
     "RecordView",
+    "RuleDifferenceView",
+    "RulesProofView",
     "SensitivityRow",
     "ShownFigure",
     "YearColumn",
@@ -159,13 +164,68 @@ class Fact:
 
 
 @dataclass(frozen=True, slots=True)
+class CorrectionView:
+    """A value as read and the value that takes its place; the value as evaluated stands in the costs.
+
+    Parameters
+    ----------
+    label : str
+        What was corrected, in words.
+    as_read, corrected : str
+        Ids of both figures.
+    rule, reason : str
+        The announced rule that corrects, and what is wrong with the value as read.
+    decision : str
+        The bidder's recorded answer or confirmation in a sentence; empty where there is none.
+    """
+
+    label: str
+    as_read: str
+    corrected: str
+    rule: str
+    reason: str
+    decision: str
+
+
+@dataclass(frozen=True, slots=True)
+class PriceStepView:
+    """One step from the quoted to the evaluated price.
+
+    Parameters
+    ----------
+    name : str
+        Kind of the step, as in `evaluation.result.PriceStep`.
+    label : str
+        What it does, in words.
+    scope : str
+        ``"unit"`` or ``"lot"``.
+    sign : str
+        ``"+"``, ``"−"``, ``"×"``, ``"÷"``; empty for a price that stands by itself.
+    change : str or None
+        Id of the figure that is added, taken away, multiplied or divided by.
+    price : str
+        Id of the price after the step.
+    rule : str
+        Why, with the place of the announced rule or adder.
+    """
+
+    name: str
+    label: str
+    scope: str
+    sign: str
+    change: str | None
+    price: str
+    rule: str
+
+
+@dataclass(frozen=True, slots=True)
 class OfferView:
     """One offer as the papers show it.
 
     Parameters
     ----------
     bidder : str
-        Name as read; untrusted text.
+        Name as read, with the alternative where the offer is one; untrusted text.
     status : str
         ``"ranked"``, ``"not evaluated"`` or ``"non-responsive"``.
     rank : int or None
@@ -190,6 +250,20 @@ class OfferView:
         Conversions that were made on assumptions, each in a sentence; they bind nobody until the bidder confirms.
     information : tuple of Fact
         Efficiency and energy, beside the money.
+    corrections : tuple of CorrectionView
+        Values that were corrected by rule or confirmed by the bidder.
+    price_steps : tuple of PriceStepView
+        From the quoted to the evaluated price: first per unit, then further items of the lot, where it has any.
+    contract_price : str or None
+        Id of what would be paid for the lot, in the currency of the bid; no adder for comparison is in it.
+    total_without_preference : str or None
+        Id of the total owning cost of the lot without a preference margin; None where the tender applies none.
+    rank_without_preference : int or None
+        Rank by these totals.
+    tie_decided_by : str
+        Criterion of the announced order that broke a tie of this offer; empty where none did.
+    decisions : tuple of str
+        Recorded decisions that took effect on the offer, each in a sentence with who, when, why and where.
     """
 
     bidder: str
@@ -210,6 +284,13 @@ class OfferView:
     reasons: tuple[str, ...]
     assumptions: tuple[str, ...] = ()
     information: tuple[Fact, ...] = ()
+    corrections: tuple[CorrectionView, ...] = ()
+    price_steps: tuple[PriceStepView, ...] = ()
+    contract_price: str | None = None
+    total_without_preference: str | None = None
+    rank_without_preference: int | None = None
+    tie_decided_by: str = ""
+    decisions: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)
@@ -366,7 +447,7 @@ class ExchangeView:
 
 @dataclass(frozen=True, slots=True)
 class FindingView:
-    """One finding in the papers."""
+    """One finding in the papers; `waiver` says who set it aside, when and why, and is empty where nobody did."""
 
     kind: str
     title: str
@@ -376,6 +457,45 @@ class FindingView:
     lot: str
     statement: str
     remedy: str
+    waiver: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class DecisionView:
+    """One recorded decision.
+
+    Parameters
+    ----------
+    kind : str
+        ``"confirm value"``, ``"accept correction"``, ``"refuse correction"``, ``"waive"``, ``"change status"``,
+        ``"break tie"``.
+    offer : str
+        Name of the offer, and its lot.
+    field : str
+        The value or the finding concerned; empty where there is none.
+    value : str
+        The confirmed value with its unit, the new status, or the place drawn.
+    reason, who, when, evidence, place : str
+        Why, by whom, on which day, where it is on file, and where it is recorded.
+    """
+
+    kind: str
+    offer: str
+    field: str
+    value: str
+    reason: str
+    who: str
+    when: str
+    evidence: str
+    place: str
+
+
+@dataclass(frozen=True, slots=True)
+class RulesProofView:
+    """Whether the rules used are the rules published, in a sentence, and where they differ."""
+
+    sentence: str
+    differences: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)
@@ -393,6 +513,53 @@ class RecordView:
     tool_version: str
     generated_at: str
     inputs: tuple[InputFile, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class DecisionView:
+    """One decision by a person, as it stands in the file of decisions."""
+
+    kind: str
+    bidder: str
+    lot: str
+    field: str
+    value: str
+    reason: str
+    who: str
+    when: str
+    evidence: str
+    place: str
+
+
+@dataclass(frozen=True, slots=True)
+class RuleDifferenceView:
+    """One rule that differs from what was published; empty texts where it is not stated."""
+
+    key: str
+    published: str
+    used: str
+
+
+@dataclass(frozen=True, slots=True)
+class RulesProofView:
+    """Whether the rules used are the rules published.
+
+    Parameters
+    ----------
+    sentence : str
+        The outcome in one sentence.
+    holds : bool
+        True only where a published file was kept and agrees.
+    fingerprint : str
+        SHA-256 of the rules used; empty where no file was kept.
+    differences : tuple of RuleDifferenceView
+        Key by key.
+    """
+
+    sentence: str
+    holds: bool
+    fingerprint: str
+    differences: tuple[RuleDifferenceView, ...]
 
 
 @dataclass(frozen=True, slots=True)
@@ -421,6 +588,10 @@ class EvaluationView:
         Versions and fingerprints.
     figures : mapping of str to ShownFigure
         Every figure behind every amount, by id, operands before results.
+    rules_proof : RulesProofView or None
+        Comparison with the rules as published; None where it was not made.
+    decisions : tuple of DecisionView
+        Decisions by people that the evaluation read.
     """
 
     reference: str
@@ -438,6 +609,8 @@ class EvaluationView:
     findings: tuple[FindingView, ...]
     record: RecordView
     figures: Mapping[str, ShownFigure]
+    rules_proof: RulesProofView | None = None
+    decisions: tuple[DecisionView, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

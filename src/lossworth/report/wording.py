@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
+from ..evaluation.announced import rule_sentence
 from ..evaluation.result import LotEvaluation, LotRates
 from ..findings import one_line
 from ..records.quantity import Entry
+from ..records.rules import RULE_KINDS
 from ..records.tender import CoolingValuation, Derivation, Lot, Tender
 from .formats import amount, as_stated, percent
 
@@ -66,9 +68,10 @@ def rules(tender: Tender) -> tuple[str, ...]:
         "A missing loss is not zero: an offer without it is not evaluated. The auxiliary loss of a unit without fans "
         "and pumps is zero where it is left blank.",
         "No tolerance stands between a guaranteed value and a limit of the tender.",
-        "Offers with the same total owning cost after rounding share a rank.",
+        "Offers with the same total owning cost after rounding share a rank, unless an announced order parts them.",
     ]
-    return tuple(sentences)
+    announced = (rule_sentence(tender, kind.key) for kind in RULE_KINDS)
+    return (*sentences, *(sentence for sentence in announced if sentence))
 
 
 def limits(stated: Lot) -> tuple[str, ...]:
@@ -236,10 +239,12 @@ def lot_recommendation(lot: LotEvaluation, currency: str) -> str:
         raise ValueError("a ranked offer has a total")
     cost = f"{currency} {amount(total.value)}"
     if len(winners) > 1:
-        names = " and ".join(one_line(offer.bidder) for offer in winners)
+        names = " and ".join(one_line(offer.name) for offer in winners)
         return f"{names} tie at the lowest total owning cost, {cost} for the lot; the announced tie order decides."
     winner = winners[0]
-    sentence = f"{one_line(winner.bidder)} has the lowest total owning cost, {cost} for the lot"
+    sentence = f"{one_line(winner.name)} has the lowest total owning cost, {cost} for the lot"
+    if winner.tie_decided_by is not None:
+        return f"{sentence}; others have the same, and the announced order decides: {winner.tie_decided_by}."
     if winner.margin is None:
         return f"{sentence}; no other offer is ranked."
     return (
@@ -263,7 +268,7 @@ def recommendation(lots: tuple[LotEvaluation, ...]) -> str:
     """
     parts = []
     for lot in lots:
-        names = " and ".join(one_line(offer.bidder) for offer in lot.winners)
+        names = " and ".join(one_line(offer.name) for offer in lot.winners)
         if len(lot.winners) > 1:
             parts.append(f"lot {lot.lot.id}: {names} (tie)")
         else:

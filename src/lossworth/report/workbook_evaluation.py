@@ -253,11 +253,20 @@ def _settle(book: Book, lot: LotView, unit_row: int, lot_row: int) -> list[str]:
 def _without_cell(book: Book, lot: LotView) -> Iterator[str]:
     seen: set[str] = set()
     for offer in lot.offers:
-        for identity in (*_ids(offer.per_unit), *_ids(offer.lot)):
+        for identity in (*_ids(offer.per_unit), *_ids(offer.lot), *_price_ids(offer)):
             for figure in behind(identity, book.view.figures) if identity is not None else ():
                 if figure.id not in book.addresses and figure.id not in seen:
                     seen.add(figure.id)
                     yield figure.id
+
+
+def _price_ids(offer: OfferView) -> Iterator[str | None]:
+    """What the way of the price, its corrections and the contract price are made of."""
+    for step in offer.price_steps:
+        yield from (step.price, step.change)
+    for correction in offer.corrections:
+        yield from (correction.as_read, correction.corrected)
+    yield from (offer.contract_price, offer.total_without_preference)
 
 
 def _rules(book: Book, lot: LotView) -> dict[str, None]:

@@ -1,0 +1,106 @@
+"""The way from the quoted to the evaluated price, corrections and decisions, as the papers show them."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from ..evaluation.result import Correction, EvaluatedOffer, PriceStep
+from ..findings import one_line
+from ..records.decision import Decision
+from ..trail import Figure
+from .view import CorrectionView, PriceStepView
+
+__all__ = ["correction_views", "decision_sentence", "price_roots", "price_step_views"]
+
+
+def price_roots(offer: EvaluatedOffer) -> Iterator[Figure]:
+    """Figures that corrections, price steps and contract price refer to.
+
+    Parameters
+    ----------
+    offer : EvaluatedOffer
+        One offer.
+
+    Yields
+    ------
+    Figure
+        Roots for the figures of the view.
+    """
+    for step in offer.price_steps:
+        yield step.price
+        if step.change is not None:
+            yield step.change
+    for correction in offer.corrections:
+        yield correction.as_read
+        yield correction.corrected
+    yield from (figure for figure in (offer.contract_price, offer.total_without_preference) if figure is not None)
+
+
+def price_step_views(offer: EvaluatedOffer) -> tuple[PriceStepView, ...]:
+    """Steps of the price.
+
+    Parameters
+    ----------
+    offer : EvaluatedOffer
+        One offer.
+
+    Returns
+    -------
+    tuple of PriceStepView
+        In the order of the chain.
+    """
+    return tuple(_step(step) for step in offer.price_steps)
+
+
+def _step(step: PriceStep) -> PriceStepView:
+    change = None if step.change is None else step.change.id
+    label, rule = one_line(step.label), one_line(step.rule)
+    return PriceStepView(step.name, label, step.scope, step.sign, change, step.price.id, rule)
+
+
+def correction_views(offer: EvaluatedOffer) -> tuple[CorrectionView, ...]:
+    """Corrected and confirmed values.
+
+    Parameters
+    ----------
+    offer : EvaluatedOffer
+        One offer.
+
+    Returns
+    -------
+    tuple of CorrectionView
+        Confirmed values first.
+    """
+    return tuple(_correction(correction) for correction in offer.corrections)
+
+
+def _correction(correction: Correction) -> CorrectionView:
+    return CorrectionView(
+        label=one_line(correction.corrected.label),
+        as_read=correction.as_read.id,
+        corrected=correction.corrected.id,
+        rule=one_line(correction.rule),
+        reason=one_line(correction.reason),
+        decision="" if correction.decision is None else decision_sentence(correction.decision),
+    )
+
+
+def decision_sentence(decision: Decision) -> str:
+    """A recorded decision in a sentence.
+
+    Parameters
+    ----------
+    decision : Decision
+        As recorded.
+
+    Returns
+    -------
+    str
+        What was decided, by whom, when, why, with what evidence, and where it stands.
+    """
+    about = decision.field.value if decision.field is not None else decision.status or ""
+    what = f"{decision.kind} {about}".strip()
+    return one_line(
+        f"{what}: {decision.reason}; by {decision.who} on {decision.when.isoformat()}, evidence: {decision.evidence} "
+        f"({decision.place})"
+    )
