@@ -5,7 +5,7 @@ from __future__ import annotations
 from decimal import Decimal as D
 from fractions import Fraction
 
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from lossworth.evaluation.evaluate import evaluate
@@ -28,6 +28,7 @@ def ranks(offers, tender=None):
 
 
 @given(fields, st.integers(0, 5), st.integers(0, 2), st.decimals("0.001", "1000", places=3))
+@settings(deadline=None)
 def test_evaluate__worse_figure_never_improves_a_rank(figures, who, which, more):
     """A dearer price or a larger loss never improves the rank of its bidder."""
     who %= len(figures)
@@ -38,6 +39,7 @@ def test_evaluate__worse_figure_never_improves_a_rank(figures, who, which, more)
 
 
 @given(fields, st.randoms(use_true_random=False))
+@settings(deadline=None)
 def test_evaluate__order_of_bids_does_not_matter(figures, random):
     """Shuffled bids give the same evaluation, order included."""
     shuffled = offers(figures)
@@ -46,6 +48,7 @@ def test_evaluate__order_of_bids_does_not_matter(figures, random):
 
 
 @given(fields)
+@settings(deadline=None)
 def test_evaluate__another_currency_unit_keeps_ranks(figures):
     """In a unit a hundred times smaller every cost is a hundred times larger, where no rounding acts."""
     whole = [(price * 100, no_load, load) for price, no_load, load in figures]
@@ -54,6 +57,7 @@ def test_evaluate__another_currency_unit_keeps_ranks(figures):
 
 
 @given(fields)
+@settings(deadline=None)
 def test_evaluate__equals_exact_fractions(figures):
     """Totals equal the same sums in exact fractions, each part rounded half up to a cent."""
 
@@ -68,6 +72,7 @@ def test_evaluate__equals_exact_fractions(figures):
 
 
 @given(fields)
+@settings(deadline=None)
 def test_evaluate__ranks_follow_totals(figures):
     """The rank of an offer is one more than the number of cheaper offers."""
     result = evaluate(make.tender(), offers(figures)).lots[0].offers

@@ -86,7 +86,8 @@ def test_result_text__fields(view):
     assert cedar["rank"] is None
     assert cedar["reasons"] == ['no-load loss: must not exceed 0.2 kW (tender.toml:1), got "0.3 kW" — tender.toml:1']
     assert damson["total_owning_cost"] is None
-    assert {f["kind"] for f in result["findings"]} == {"no-load-loss-above-maximum", "tie", "value-missing"}
+    kinds = {"apparent-error-price", "no-load-loss-above-maximum", "tie", "value-missing"}
+    assert {f["kind"] for f in result["findings"]} == kinds
     assert result["inputs"] == [{"path": "tender.toml", "sha256": "0" * 64}]
 
 

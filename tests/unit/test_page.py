@@ -7,6 +7,7 @@ from dataclasses import replace
 from decimal import Decimal
 from importlib.resources import files
 from itertools import pairwise
+from pathlib import Path
 
 import pytest
 from jinja2 import UndefinedError
@@ -258,8 +259,9 @@ def test_templates__all_found_as_package_resources() -> None:
     folder = files("lossworth.templates") / "report"
     names = {item.name for item in folder.iterdir() if item.name.endswith(".j2")}
     sources = "".join((folder / name).read_text(encoding="utf-8") for name in names)
-    used = set(re.findall(r'(?:include|from) "(.*?)"', sources)) | {"page.html.j2"}
-    assert {name for name in names if name != "page.html.j2"} == used - {"page.html.j2"}
+    code = "".join(path.read_text(encoding="utf-8") for path in Path(page.__file__).parent.glob("*.py"))
+    used = set(re.findall(r'(?:include|from) "(.*?)"', sources)) | set(re.findall(r'get_template\("(.*?)"\)', code))
+    assert names == used
 
 
 def test_templates__no_arithmetic() -> None:

@@ -8,6 +8,7 @@ import pytest
 
 from lossworth.evaluation.loss_basis import on_basis
 from lossworth.evaluation.responsiveness import check_offer, peak_efficiency_index_percent
+from lossworth.records.commercial import OfferTerms
 from support import records as make
 
 LIMITS = {
@@ -97,3 +98,37 @@ def test_check_peak_efficiency_index__exact_at_the_limit():
     beyond = make.offer(no_load_loss_kw=make.quantity("0.5", "kW"), load_loss_kw=make.quantity("2.000001", "kW"))
     assert check(at_limit, lot) == ()
     assert [f.kind for f in check(beyond, lot)] == ["efficiency-below-minimum"]
+
+
+def terms(lot_changes, **stated):
+    """Kinds of the findings on an offer with these commercial terms."""
+    offer = make.offer(terms=OfferTerms(**stated))
+    return [finding.kind for finding in check(offer, make.lot(**lot_changes))]
+
+
+@pytest.mark.parametrize(
+    ("sound", "kinds"), [("45", []), ("45.1", ["sound-level-above-maximum"]), (None, ["limit-not-answered"])]
+)
+def test_check_sound_level__at_the_limit(sound, kinds):
+    """A guarantee at the limit passes, a tenth above fails, silence is a finding."""
+    stated = None if sound is None else make.quantity(sound, "dB(A)")
+    assert terms({"maximum_sound_level_db": make.quantity("45", "dB(A)")}, sound_level_db=stated) == kinds
+
+
+@pytest.mark.parametrize(
+    ("liquid", "kinds"),
+    [(" Natural  ESTER", []), ("mineral oil", ["liquid-not-accepted"]), (None, ["limit-not-answered"])],
+)
+def test_check_insulating_liquid__one_of_those_accepted(liquid, kinds):
+    """Case and blanks do not matter, another liquid does."""
+    stated = None if liquid is None else make.entry(liquid)
+    assert terms({"accepted_liquids": ("natural ester", "synthetic ester")}, insulating_liquid=stated) == kinds
+
+
+@pytest.mark.parametrize(
+    ("declared", "kinds"), [(True, []), (False, ["pcb-free-not-declared"]), (None, ["limit-not-answered"])]
+)
+def test_check_pcb_free__required_declaration(declared, kinds):
+    """A declaration that the tender requires; nothing is asked where it requires none."""
+    assert terms({"pcb_free_required": True}, pcb_free=declared) == kinds
+    assert terms({}, pcb_free=declared) == []
