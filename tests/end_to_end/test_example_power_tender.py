@@ -28,7 +28,7 @@ def result(tmp_path_factory: pytest.TempPathFactory) -> dict[str, Any]:
     papers = tmp_path_factory.mktemp("papers")
     outcome = call("evaluate", FOLDER, "--papers", papers, "--as-of", "2026-10-20T10:00:00Z")
     assert outcome.code == 0, outcome.err
-    assert {path.suffix for path in papers.iterdir()} == {".html", ".xlsx", ".json"}
+    assert {path.suffix for path in papers.iterdir() if path.is_file()} == {".html", ".xlsx", ".json"}
     written: dict[str, Any] = json.loads((papers / "evaluation.json").read_text(encoding="utf-8"))
     return written
 
