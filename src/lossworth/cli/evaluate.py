@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 import click
 
 from .inputs import place_and_bids_arguments
+from .paper_options import paper_options
 
 if TYPE_CHECKING:
     from ..evaluation.result import Evaluation
@@ -22,17 +23,7 @@ _FOLDERS = ("questions", "internal")
 
 @click.command()
 @place_and_bids_arguments
-@click.option(
-    "--papers",
-    type=click.Path(path_type=Path, file_okay=False),
-    help="Folder for the papers; default: papers, beside the tender file.",
-)
-@click.option("--overwrite", is_flag=True, help="Replace papers that exist already.")
-@click.option(
-    "--as-of",
-    metavar="TIME",
-    help="Time that the papers state, as 2026-09-15T10:00:00Z; default: SOURCE_DATE_EPOCH, else the clock.",
-)
+@paper_options
 def evaluate(tender: Path, bids: tuple[Path, ...], papers: Path | None, overwrite: bool, as_of: str | None) -> None:
     """Rank the offers of each lot by total owning cost and write the papers.
 

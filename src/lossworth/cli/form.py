@@ -7,6 +7,7 @@ from pathlib import Path
 import click
 
 from .inputs import place_argument
+from .paper_options import paper_options
 
 __all__ = ["form"]
 
@@ -15,17 +16,7 @@ _FORM = "bid_form.xlsx"
 
 @click.command()
 @place_argument
-@click.option(
-    "--papers",
-    type=click.Path(path_type=Path, file_okay=False),
-    help="Folder for the form; default: papers, beside the tender file.",
-)
-@click.option("--overwrite", is_flag=True, help="Replace a form that exists already.")
-@click.option(
-    "--as-of",
-    metavar="TIME",
-    help="Time that the form carries, as 2026-08-01T10:00:00Z; default: SOURCE_DATE_EPOCH, else the clock.",
-)
+@paper_options
 def form(tender: Path, papers: Path | None, overwrite: bool, as_of: str | None) -> None:
     """Write the blank bid form of a tender: a workbook with price schedule, guaranteed particulars and self-check.
 

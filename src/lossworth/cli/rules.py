@@ -7,6 +7,7 @@ from pathlib import Path
 import click
 
 from .inputs import place_argument
+from .paper_options import paper_options
 
 __all__ = ["rules"]
 
@@ -16,18 +17,8 @@ _AMENDED = "If the tender is published anew, move the file into the record of th
 
 @click.command()
 @place_argument
-@click.option(
-    "--papers",
-    type=click.Path(path_type=Path, file_okay=False),
-    help="Folder for the sheet; default: papers, beside the tender file.",
-)
-@click.option("--overwrite", is_flag=True, help="Replace a sheet that exists already; never a published one.")
+@paper_options
 @click.option("--publish", is_flag=True, help="Also keep published_rules.json beside the tender file; once only.")
-@click.option(
-    "--as-of",
-    metavar="TIME",
-    help="Time that the sheet states, as 2026-08-01T10:00:00Z; default: SOURCE_DATE_EPOCH, else the clock.",
-)
 def rules(tender: Path, papers: Path | None, overwrite: bool, publish: bool, as_of: str | None) -> None:
     """Write the rules by which offers will be judged, each as a sentence for the tender documents, with a fingerprint.
 
