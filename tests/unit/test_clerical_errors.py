@@ -357,3 +357,26 @@ def test_docs__have_a_row_for_every_kind() -> None:
     rows = [line.split("`")[1] for line in page.splitlines() if line.startswith("| `")]
     assert {f"apparent-error-{row}" for row in rows} == {each.finding.kind for each in all_found()}
     assert len(rows) == len(CHECKS)
+
+
+def test_check_rating__a_stated_rating_is_not_asked_again() -> None:
+    """A bidder that states the lower rating itself is converted or asked by the loss basis, not suspected of it."""
+    offer = records.offer(
+        load_loss_kw=records.quantity("57.2", "kW"),
+        no_load_loss_kw=records.quantity("14.4", "kW"),
+        impedance_percent=records.quantity("7.9", "%"),
+        load_loss_rating_kva=records.quantity("20000", "kVA"),
+    )
+    lot = records.lot(
+        rated_power_kva=records.quantity("31500", "kVA"),
+        impedance_percent=records.quantity("12.5", "%"),
+        impedance_tolerance_percentage_points=records.quantity("0.5", "%"),
+        loss_basis=records.loss_basis(),
+    )
+    silent = offer.model_copy(update={"load_loss_rating_kva": None})
+    kinds = {
+        name: {s.finding.kind for s in find_clerical_errors(records.tender(lot), [one], ())}
+        for name, one in (("stated", offer), ("silent", silent))
+    }
+    assert "apparent-error-rating" in kinds["silent"]
+    assert "apparent-error-rating" not in kinds["stated"]

@@ -65,6 +65,13 @@ def test_readme__commands_exist() -> None:
         assert set(re.findall(r"--[\w-]+", rest)) <= known
 
 
+def test_readme__links_every_page() -> None:
+    """Whoever begins at the README finds every page, one step away."""
+    page = text_of("README.md")
+    pages = [path.relative_to(CHECKOUT).as_posix() for path in PAGES if path.name != "README.md"]
+    assert [path for path in pages if f"]({path})" not in page] == []
+
+
 def test_method__functions_exist() -> None:
     """Every function of the engine that the method names can be imported."""
     rows = re.findall(r"^\| `.*", section(text_of("docs/method.md"), "## 8. "), re.MULTILINE)

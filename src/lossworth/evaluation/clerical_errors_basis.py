@@ -91,9 +91,10 @@ class _Wanted:
 def check_rating(seen: Seen) -> Iterator[Suspicion]:
     """Load loss and impedance that fit another rating of the unit, mostly that without fans."""
     load, impedance = seen.offer.load_loss_kw, seen.offer.impedance_percent
+    own_rating = seen.offer.load_loss_rating_kva
     wanted = _wanted_impedance(seen)
-    if load is None:
-        return
+    if load is None or (own_rating is not None and own_rating.value != seen.here.rating.value):
+        return  # a bidder that states another rating is converted or asked by the loss basis
     if impedance is not None and wanted is not None:
         if abs(impedance.value - wanted.percent) > wanted.tolerance:
             yield from _by_impedance(seen, load, impedance, wanted)
