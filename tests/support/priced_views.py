@@ -7,12 +7,14 @@ from __future__ import annotations
 
 import datetime
 from dataclasses import replace
+from decimal import Decimal
 from typing import Any
 
 from lossworth.evaluation.evaluate import evaluate
+from lossworth.money import Rounding, RoundingMode
 from lossworth.records.bid import Offer
 from lossworth.records.decision import Decision
-from lossworth.records.tender import RoundingPoint, Tender
+from lossworth.records.tender import RoundingPoint, Rules, Tender
 from lossworth.report.build_view import build_view
 from lossworth.report.view import EvaluationView, RuleDifferenceView, RulesProofView
 from support import commercial as make
@@ -41,7 +43,7 @@ SETTINGS: dict[str, Any] = {
 
 
 def priced_tender(
-    *, margin: str = "7.5", interest: str = "10", per_week: str = "0.5", point: str = "each cost part per unit"
+    *, margin: str = "7.5", interest: str = "10", per_week: str = "0.5", per_lot: bool = False, down: bool = False
 ) -> Tender:
     """The tender; arguments are inputs that a reader of the workbook may change."""
     lots = (
@@ -61,17 +63,23 @@ def priced_tender(
         records.lot("2", description=make.entry("100 kVA, a tie")),
     )
     identity = records.tender().identity.model_copy(update={"opening_date": datetime.date(2026, 9, 15)})
-    return make.tender(
+    return records.tender(
         *lots,
         identity=identity,
-        settings=SETTINGS,
         taxes=make.taxes("7.7"),
         payment_terms=make.payment_terms(interest, make.payment("0.3", "0"), make.payment("0.7", "36")),
         preference=make.preference(margin),
         exchange=records.exchange(FCU="1.2537"),
         delivered_point=make.entry("DDP site"),
         delivery_levels=(make.level("EXW", "4", "120"), make.level("CIP", "1.5")),
-    ).model_copy(update={"rules": make.rules(RoundingPoint(point), **SETTINGS)})
+        rules=_rules(per_lot=per_lot, down=down),
+    )
+
+
+def _rules(*, per_lot: bool, down: bool) -> Rules:
+    point = RoundingPoint.PART_PER_LOT if per_lot else RoundingPoint.PART_PER_UNIT
+    mode = RoundingMode.DOWN if down else RoundingMode.HALF_AWAY_FROM_ZERO
+    return make.rules(point, **SETTINGS).model_copy(update={"rounding": Rounding(Decimal("0.01"), mode)})
 
 
 def _terms(**changes: Any) -> dict[str, Any]:
@@ -91,7 +99,7 @@ def priced_offers() -> tuple[Offer, ...]:
     """Offers of both lots."""
     everything = _terms(
         currency=make.entry("FCU"),
-        unit_price=make.quantity("3333.33", "FCU"),
+        unit_price=make.quantity("2975.05", "FCU"),
         unconditional_discount_percent=make.quantity("3"),
         prompt_payment_discount_percent=make.quantity("2"),
         tax_included=True,
@@ -107,15 +115,20 @@ def priced_offers() -> tuple[Offer, ...]:
     late = _terms(delivery_weeks=make.quantity("44"))
     tied = {"delivery_weeks": make.quantity("12"), "origin": make.entry("home")}
     return (
-        make.bid(HOSTILE_NAME, "3333.33", **everything),
+        make.bid(HOSTILE_NAME, "2975.05", **everything),
         make.bid("Birchlune", "4000", **corrected),
-        make.bid("Cedarfell", "4100", **_terms(load_loss_kw=records.quantity("0.0012", "W", "1.2"))),
+        make.bid(
+            "Cedarfell",
+            "4100",
+            **_terms(load_loss_kw=records.quantity("0.0012", "W", "1.2"), total_loss_kw=records.quantity("1.32", "kW")),
+        ),
         make.bid("Cedarfell", "4400", alternative="ester", **_terms(delivery_term=make.entry("CIP"))),
         make.bid("Damsonby", "3900", **late),
         make.bid("Elderquill", "4000", "2", **tied),
         make.bid("Firthwane", "4000", "2", **(tied | {"delivery_weeks": make.quantity("10")})),
         make.bid("Gorsemere", "4000", "2", **tied),
         make.bid("Hazel", "4200", "2", **tied),
+        make.bid("Ivydale", "9000", "2", load_loss_kw=records.quantity("0.0012", "W", "1.2"), **tied),
     )
 
 

@@ -79,9 +79,9 @@ def test_bid_form_bytes__identical_for_the_same_view() -> None:
 @pytest.mark.parametrize("tender", [make.tender(), full_tender()], ids=["plain", "full"])
 def test_form__one_table_of_offers_and_no_other(tender: Tender) -> None:
     """Only the price schedule and the alternatives have a header, and each heading means what the form asks."""
-    sheets = read_workbook(form_of(tender), "form.xlsx")
-    assert not isinstance(sheets, Finding)
-    headers = {sheet.name: [row for row in sheet.rows if is_header(row)] for sheet in sheets}
+    book = read_workbook(form_of(tender), "form.xlsx")
+    assert not isinstance(book, Finding)
+    headers = {sheet.name: [row for row in sheet.rows if is_header(row)] for sheet in book.sheets}
     found = {name: len(rows) for name, rows in headers.items() if rows}
     assert found == {"Price schedule": 1} | ({"Alternatives": 1} if "Alternatives" in headers else {})
     (header,) = headers["Price schedule"]

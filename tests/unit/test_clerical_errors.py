@@ -368,7 +368,9 @@ def test_check_rating__a_stated_rating_is_not_asked_again() -> None:
         load_loss_rating_kva=records.quantity("20000", "kVA"),
     )
     lot = records.lot(
+        description=records.entry("20/31.5 MVA, 33/11 kV"),
         rated_power_kva=records.quantity("31500", "kVA"),
+        cooling=records.entry("ONAN/ONAF"),
         impedance_percent=records.quantity("12.5", "%"),
         impedance_tolerance_percentage_points=records.quantity("0.5", "%"),
         loss_basis=records.loss_basis(),

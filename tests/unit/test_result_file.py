@@ -18,6 +18,15 @@ from support.page_views import page_view
 _LOT = {"id", "description", "quantity", "rates", "recommendation", "offers"}
 _RATES = {"A", "B", "C", "unit", "basis"}
 _OFFER = {"bidder", "status", "rank", "per_unit", "margin", "as_read", "reasons"}
+_PRICED = {
+    "corrections",
+    "price_steps",
+    "contract_price",
+    "total_without_preference",
+    "rank_without_preference",
+    "tie_decided_by",
+    "decisions",
+}
 _COSTS = {"evaluated_price", "no_load_cost", "load_cost", "auxiliary_cost", "total_owning_cost"}
 
 
@@ -39,7 +48,7 @@ def test_result_text__fields_of_old_stay_beside_the_new_ones(lots: list[dict[str
         assert set(lot) == _LOT
         assert set(lot["rates"]) == _RATES | {"method", "formulas", "year_table", "load_profile"}
         for offer in lot["offers"]:
-            assert set(offer) == _OFFER | _COSTS | {"assumptions", "information"}
+            assert set(offer) == _OFFER | _COSTS | {"assumptions", "information"} | _PRICED
 
 
 def test_result_text__nothing_new_is_null_or_empty() -> None:

@@ -71,10 +71,22 @@ def correction_views(offer: EvaluatedOffer) -> tuple[CorrectionView, ...]:
     tuple of CorrectionView
         Confirmed values first.
     """
-    return tuple(_correction(correction) for correction in offer.corrections)
+    return tuple(_correction(correction, offer) for correction in offer.corrections)
 
 
-def _correction(correction: Correction) -> CorrectionView:
+def _evaluated(correction: Correction, offer: EvaluatedOffer) -> Figure | None:
+    """The third layer: what the corrected value became in the evaluation."""
+    layers = {
+        "unit_price": offer.per_unit.evaluated_price,
+        "total_price": offer.lot.evaluated_price,
+        "no_load_loss_kw": offer.on_basis.no_load_loss,
+        "load_loss_kw": offer.on_basis.load_loss,
+    }
+    return layers.get(correction.field, correction.corrected)
+
+
+def _correction(correction: Correction, offer: EvaluatedOffer) -> CorrectionView:
+    evaluated = _evaluated(correction, offer)
     return CorrectionView(
         label=one_line(correction.corrected.label),
         as_read=correction.as_read.id,
@@ -82,6 +94,7 @@ def _correction(correction: Correction) -> CorrectionView:
         rule=one_line(correction.rule),
         reason=one_line(correction.reason),
         decision="" if correction.decision is None else decision_sentence(correction.decision),
+        evaluated=None if evaluated is None else evaluated.id,
     )
 
 

@@ -348,4 +348,5 @@ def _finding(finding: Finding) -> FindingView:
         lot=one_line(finding.lot or ""),
         statement=finding.statement,
         remedy=finding.remedy,
+        waiver=one_line(finding.waiver),
     )

@@ -10,13 +10,29 @@ from .figures import CostPart, StackedBars, StackedCost, stacked_bars
 from .formats import amount, number, percent
 from .page_environment import environment as _environment
 from .page_environment import visible as _visible
+from .page_prices import PriceTable, price_groups, price_tables
 from .page_rates import Line, RatesSheet, behind, rates_sheet
-from .view import CostView, EvaluationView, Fact, LotView, OfferView, ShownFigure
+from .view import CostView, EvaluationView, Fact, FindingView, LotView, OfferView, ShownFigure
 
 __all__ = ["page_html"]
 
 _PARTS = ("evaluated_price", "no_load_cost", "load_cost", "auxiliary_cost")
 _AMOUNTS = (*_PARTS, "total_owning_cost")
+#: Kinds of findings that are questions to the bidder.
+_ASKED = "apparent-error"
+#: Heading and explanation of each part of the findings; the first part has none.
+_FINDING_PARTS = {
+    "": ("", ""),
+    "asked": (
+        "Questions put to bidders",
+        "A figure looks like a slip of the pen. It is evaluated as read; only a recorded answer of the bidder can "
+        "change it, as far as the tender's rules allow.",
+    ),
+    "waived": (
+        "Waived by decision",
+        "Set aside by a recorded decision, and without effect on the status of the offer.",
+    ),
+}
 
 
 @dataclass(frozen=True, slots=True)
@@ -54,6 +70,7 @@ class _LotSheet:
     chart: StackedBars | None
     rates: RatesSheet
     information: _Information | None
+    prices: tuple[PriceTable, ...]
 
     @property
     def sheets(self) -> tuple[_OfferSheet, ...]:
@@ -69,6 +86,16 @@ class _LotSheet:
     def assumed(self) -> tuple[_OfferSheet, ...]:
         """The offers of which a value was converted on an assumption."""
         return tuple(sheet for sheet in self.sheets if sheet.offer.assumptions)
+
+    @property
+    def corrected(self) -> tuple[_OfferSheet, ...]:
+        """The offers of which a value was corrected or confirmed."""
+        return tuple(sheet for sheet in self.sheets if sheet.offer.corrections)
+
+    @property
+    def has_preference(self) -> bool:
+        """Whether the tender applies a preference, so that there are two rankings."""
+        return any(sheet.offer.rank_without_preference is not None for sheet in self.ranked)
 
     @property
     def has_margins(self) -> bool:
@@ -95,7 +122,20 @@ def page_html(view: EvaluationView) -> str:
         If the view names a figure that it does not hold.
     """
     lots = tuple(_lot_sheet(view.figures, lot, f"lot-{count}") for count, lot in enumerate(view.lots, start=1))
-    return _environment().get_template("page.html.j2").render(view=view, figures=view.figures, lots=lots)
+    return (
+        _environment()
+        .get_template("page.html.j2")
+        .render(view=view, figures=view.figures, lots=lots, findings=_sorted_findings(view.findings))
+    )
+
+
+def _sorted_findings(findings: Iterable[FindingView]) -> tuple[tuple[str, str, tuple[FindingView, ...]], ...]:
+    """Findings in parts: those that act, questions that bidders were asked, and those that a decision set aside."""
+    parts: dict[str, list[FindingView]] = {name: [] for name in _FINDING_PARTS}
+    for finding in findings:
+        part = "waived" if finding.waiver else "asked" if finding.kind.startswith(_ASKED) else ""
+        parts[part].append(finding)
+    return tuple((*_FINDING_PARTS[name], tuple(found)) for name, found in parts.items() if found)
 
 
 def _lot_sheet(figures: Mapping[str, ShownFigure], lot: LotView, anchor: str) -> _LotSheet:
@@ -117,6 +157,7 @@ def _lot_sheet(figures: Mapping[str, ShownFigure], lot: LotView, anchor: str) ->
         chart=stacked_bars([_stacked_cost(figures, sheet.offer) for sheet in ranked]) if ranked else None,
         rates=rates_sheet(figures, lot, anchor),
         information=_information(sheets),
+        prices=price_tables(figures, ((sheet.offer, sheet.anchors) for sheet in sheets)),
     )
 
 
@@ -158,6 +199,8 @@ def _groups(
     read = (offer.unit_price, offer.no_load_loss, offer.load_loss, offer.auxiliary_loss)
     yield "Per unit", behind(figures, [*_ids(offer.per_unit), *filter(None, read)], closed=rates)
     yield "Whole lot", behind(figures, _ids(offer.lot), closed=rates)
+    for title, roots in price_groups(offer):
+        yield title, behind(figures, roots, closed=rates)
     if offer.margin:
         yield f"Margin to {offer.margin.to}", behind(figures, [offer.margin.amount], closed=rates | totals)
 

@@ -4,11 +4,23 @@ from __future__ import annotations
 
 import json
 from collections.abc import Iterable
+from dataclasses import asdict
 from decimal import Decimal
 from typing import Any
 
 from .formats import plain
-from .view import CostView, EvaluationView, Fact, LoadView, LotView, MarginView, OfferView, YearTableView
+from .view import (
+    CorrectionView,
+    CostView,
+    EvaluationView,
+    Fact,
+    LoadView,
+    LotView,
+    MarginView,
+    OfferView,
+    PriceStepView,
+    YearTableView,
+)
 
 __all__ = ["FORMAT_VERSION", "result_text"]
 
@@ -36,7 +48,12 @@ def result_text(view: EvaluationView) -> str:
     {``columns[]``: ``name``, ``heading``, ``unit``, ``values``} and ``load_profile`` {``file``, ``remarks``,
     ``facts[]``, ``peak_load_by_year_pu``, ``cooling_stages[]``: ``above_load_pu``, ``share_percent``,
     ``hours_by_year``}; the last two are null where there is none. Their numbers have twelve significant digits. Under
-    ``lots[].offers[]``, beside the costs: ``assumptions`` and ``information[]`` {``label``, ``value``, ``unit``}.
+    ``lots[].offers[]``, beside the costs: ``assumptions`` and ``information[]`` {``label``, ``value``, ``unit``};
+    ``corrections[]`` {``label``, ``as_read``, ``corrected``, ``evaluated``, ``rule``, ``reason``, ``decision``},
+    ``price_steps[]`` {``name``, ``label``, ``scope``, ``sign``, ``change``, ``price``, ``rule``}, ``contract_price``,
+    all their figures {``value``, ``unit``, ``source``}; ``total_without_preference``, ``rank_without_preference``,
+    ``tie_decided_by``, ``decisions``. At the top: ``rules_proof`` and ``decisions[]``. Price steps and the contract
+    price have up to twelve significant digits where they are not yet rounded money.
     """
     content = {
         "format_version": FORMAT_VERSION,
@@ -50,6 +67,8 @@ def result_text(view: EvaluationView) -> str:
         },
         "recommendation": view.recommendation,
         "rules": list(view.rules),
+        "rules_proof": _rules_proof(view),
+        "decisions": [asdict(decision) for decision in view.decisions],
         "lots": [_lot(view, lot) for lot in view.lots],
         "exchange": _exchange(view),
         "findings": [
@@ -61,6 +80,7 @@ def result_text(view: EvaluationView) -> str:
                 "lot": finding.lot or None,
                 "statement": finding.statement,
                 "remedy": finding.remedy,
+                "waiver": finding.waiver or None,
             }
             for finding in view.findings
         ],
@@ -150,6 +170,45 @@ def _offer(view: EvaluationView, offer: OfferView) -> dict[str, Any]:
         "reasons": list(offer.reasons),
         "assumptions": list(offer.assumptions),
         "information": _facts(offer.information),
+        "corrections": [_correction(view, correction) for correction in offer.corrections],
+        "price_steps": [_step(view, step) for step in offer.price_steps],
+        "contract_price": _figure(view, offer.contract_price),
+        "total_without_preference": _value(view, offer.total_without_preference),
+        "rank_without_preference": offer.rank_without_preference,
+        "tie_decided_by": offer.tie_decided_by or None,
+        "decisions": list(offer.decisions),
+    }
+
+
+def _figure(view: EvaluationView, id: str | None) -> dict[str, str | None] | None:
+    if id is None:
+        return None
+    figure = view.figures[id]
+    return {"value": plain(figure.value), "unit": figure.unit, "source": figure.source or None}
+
+
+def _correction(view: EvaluationView, correction: CorrectionView) -> dict[str, Any]:
+    """The three layers of a figure, none overwritten."""
+    return {
+        "label": correction.label,
+        "as_read": _figure(view, correction.as_read),
+        "corrected": _figure(view, correction.corrected),
+        "evaluated": _figure(view, correction.evaluated),
+        "rule": correction.rule,
+        "reason": correction.reason,
+        "decision": correction.decision or None,
+    }
+
+
+def _step(view: EvaluationView, step: PriceStepView) -> dict[str, Any]:
+    return {
+        "name": step.name,
+        "label": step.label,
+        "scope": step.scope,
+        "sign": step.sign or None,
+        "change": _figure(view, step.change),
+        "price": _figure(view, step.price),
+        "rule": step.rule,
     }
 
 
@@ -177,6 +236,10 @@ def _margin(view: EvaluationView, margin: MarginView | None) -> dict[str, Any] |
         "no_load_loss_kw": text(margin.no_load_loss_kw),
         "load_loss_kw": text(margin.load_loss_kw),
     }
+
+
+def _rules_proof(view: EvaluationView) -> dict[str, Any] | None:
+    return None if view.rules_proof is None else asdict(view.rules_proof)
 
 
 def _exchange(view: EvaluationView) -> dict[str, Any] | None:

@@ -81,8 +81,30 @@ def evaluation_text(view: EvaluationView, width: int, *, color: bool = False) ->
         for offer in lot.offers:
             if offer.rank is None:
                 console.print(_text(f"{offer.status}: {offer.bidder} — {'; '.join(offer.reasons)}"))
+        for line in _notes(view, lot):
+            console.print(_text(line))
         console.print(_text(lot.recommendation, "bold"))
     return _captured(console)
+
+
+def _notes(view: EvaluationView, lot: LotView) -> Iterator[str]:
+    """What stands beside the ranking: corrections, decisions, contract prices, the ranking without preference."""
+    for offer in lot.offers:
+        for correction in offer.corrections:
+            before, after = view.figures[correction.as_read], view.figures[correction.corrected]
+            yield f"corrected: {offer.bidder} — {before.text} {before.unit} as read, now {after.text} {after.unit}"
+        if offer.tie_decided_by:
+            yield f"tie: {offer.bidder} — rank {offer.rank_text}, decided by {offer.tie_decided_by}"
+        for decision in offer.decisions:
+            yield f"decision: {offer.bidder} — {decision}"
+    if any(offer.has_price_steps for offer in lot.offers):
+        prices = ((offer.bidder, view.figures[offer.contract_price]) for offer in lot.offers if offer.contract_price)
+        yield "contract price of the lot: " + "; ".join(f"{who} {price.text} {price.unit}" for who, price in prices)
+    moved = [offer for offer in lot.offers if offer.rank_without_preference not in (None, offer.rank)]
+    if moved:
+        yield "without preference: " + "; ".join(
+            f"{offer.bidder} rank {offer.rank_without_preference}" for offer in moved
+        )
 
 
 def rates_text(report: RatesReport, width: int, *, years: bool = False, color: bool = False) -> str:

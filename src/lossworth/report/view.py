@@ -177,6 +177,8 @@ class CorrectionView:
         The announced rule that corrects, and what is wrong with the value as read.
     decision : str
         The bidder's recorded answer or confirmation in a sentence; empty where there is none.
+    evaluated : str or None
+        Id of the figure as evaluated, the third layer: a loss on the tender's basis, an evaluated price.
     """
 
     label: str
@@ -185,6 +187,7 @@ class CorrectionView:
     rule: str
     reason: str
     decision: str
+    evaluated: str | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -291,6 +294,11 @@ class OfferView:
     rank_without_preference: int | None = None
     tie_decided_by: str = ""
     decisions: tuple[str, ...] = ()
+
+    @property
+    def has_price_steps(self) -> bool:
+        """Whether more than a currency lies between the quoted and the evaluated price."""
+        return any(step.name not in ("quoted", "currency", "evaluated") for step in self.price_steps)
 
 
 @dataclass(frozen=True, slots=True)
@@ -458,44 +466,6 @@ class FindingView:
     statement: str
     remedy: str
     waiver: str = ""
-
-
-@dataclass(frozen=True, slots=True)
-class DecisionView:
-    """One recorded decision.
-
-    Parameters
-    ----------
-    kind : str
-        ``"confirm value"``, ``"accept correction"``, ``"refuse correction"``, ``"waive"``, ``"change status"``,
-        ``"break tie"``.
-    offer : str
-        Name of the offer, and its lot.
-    field : str
-        The value or the finding concerned; empty where there is none.
-    value : str
-        The confirmed value with its unit, the new status, or the place drawn.
-    reason, who, when, evidence, place : str
-        Why, by whom, on which day, where it is on file, and where it is recorded.
-    """
-
-    kind: str
-    offer: str
-    field: str
-    value: str
-    reason: str
-    who: str
-    when: str
-    evidence: str
-    place: str
-
-
-@dataclass(frozen=True, slots=True)
-class RulesProofView:
-    """Whether the rules used are the rules published, in a sentence, and where they differ."""
-
-    sentence: str
-    differences: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

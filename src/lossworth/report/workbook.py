@@ -10,10 +10,20 @@ import xlsxwriter
 from .view import EvaluationView
 from .workbook_bids import BIDS, write_bids
 from .workbook_cells import Addresses
+from .workbook_contract import (
+    CONTRACT,
+    CORRECTIONS,
+    DECISIONS,
+    has_corrections,
+    write_contract,
+    write_corrections,
+    write_decisions,
+)
 from .workbook_evaluation import EVALUATION, write_evaluation
 from .workbook_information import INFORMATION, has_information, write_information
 from .workbook_inputs import INPUTS, write_inputs
 from .workbook_look import FONT, Look
+from .workbook_prices import PRICES, has_prices, plan_prices, write_prices
 from .workbook_ranking import RANKING, write_ranking
 from .workbook_rates import RATES, write_rates
 from .workbook_record import (
@@ -64,7 +74,15 @@ def workbook_bytes(view: EvaluationView) -> bytes:
     write_inputs(book)
     write_bids(book)
     write_rates(book)
+    prices = plan_prices(book) if has_prices(view) else None
     cells = write_evaluation(book)
+    if prices is not None:
+        write_prices(book, prices)
+        write_contract(book, cells)
+    if has_corrections(view):
+        write_corrections(book)
+    if view.decisions:
+        write_decisions(book)
     rankings = write_ranking(book, cells)
     verdict = write_comparison(book, cells)
     if has_information(view):
@@ -91,7 +109,10 @@ def _sheets(view: EvaluationView) -> tuple[str, ...]:
     derived = any(lot.rates.year_table is not None for lot in view.lots)
     years = (YEARS,) if derived else ()
     beside = (INFORMATION,) if has_information(view) else ()
-    return (SUMMARY, RANKING, EVALUATION, RATES, *years, INPUTS, BIDS, *beside, FINDINGS, COMPARISON, RECORD)
+    prices = (CONTRACT, PRICES) if has_prices(view) else ()
+    people = (*((CORRECTIONS,) if has_corrections(view) else ()), *((DECISIONS,) if view.decisions else ()))
+    start = (SUMMARY, RANKING, *prices[:1], EVALUATION, *prices[1:])
+    return (*start, RATES, *years, INPUTS, BIDS, *people, *beside, FINDINGS, COMPARISON, RECORD)
 
 
 def _properties(view: EvaluationView) -> dict[str, object]:

@@ -4,11 +4,13 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Iterator
 from dataclasses import dataclass
+from decimal import Decimal
 
 from .view import CostView, EvaluationView, LotView, OfferView
 from .workbook_cells import ARITHMETIC, Cell, behind, column_name, wording_of
 from .workbook_inputs import rate_figures
 from .workbook_look import decimals_of
+from .workbook_prices import price_ids
 from .workbook_sheet import Book, Column, Sheet, capital
 from .workbook_text import width_of
 
@@ -23,6 +25,7 @@ _FIRST_AMOUNT = 7
 _TOTAL = _FIRST_AMOUNT + len(AMOUNTS) - 1
 _RANK = _TOTAL + 1
 _ORDER = _RANK + 1
+_TIE = _ORDER + 1
 _NOTE = (
     "Total owning cost = evaluated price + A × P0 + B × Pk + C × Paux. Every amount is a formula; its operands stand "
     "in the same row, in the row of the rates, or on the sheets with bids, rates and inputs."
@@ -142,7 +145,13 @@ def _columns(view: EvaluationView) -> tuple[Column, ...]:
         Column(f"Total\nowning cost\n[{currency}]", money, numeric=True),
         Column("Rank,\nor status", 16, numeric=True),
         Column("helper: place in the order", 9, helper=True),
+        *((Column("helper: place in a tie", 9, helper=True),) if _parts_ties(view) else ()),
     )
+
+
+def _parts_ties(view: EvaluationView) -> bool:
+    """Whether the announced order broke a tie in some lot."""
+    return any(offer.tie_decided_by for lot in view.lots for offer in lot.offers)
 
 
 def money_width(view: EvaluationView) -> float:
@@ -197,8 +206,9 @@ def _lot(book: Book, sheet: Sheet, lot: LotView) -> LotCells:
     _amount_rows(book, sheet, lot, block, unit=True)
     sheet.paragraph("Whole lot", "part")
     _amount_rows(book, sheet, lot, block, unit=False)
-    for position in range(len(ranked)):
-        _rank(sheet, cells, position, ranked[position])
+    ties = _places_in_ties(book, ranked) if _parts_ties(book.view) else None
+    for position, offer in enumerate(ranked):
+        _rank(sheet, cells, position, offer, None if ties is None else ties[position])
     _steps(book, sheet, steps, block)
     for statement in _rules(book, lot):
         sheet.paragraph(capital(statement), "quiet paragraph")
@@ -253,20 +263,11 @@ def _settle(book: Book, lot: LotView, unit_row: int, lot_row: int) -> list[str]:
 def _without_cell(book: Book, lot: LotView) -> Iterator[str]:
     seen: set[str] = set()
     for offer in lot.offers:
-        for identity in (*_ids(offer.per_unit), *_ids(offer.lot), *_price_ids(offer)):
+        for identity in (*_ids(offer.per_unit), *_ids(offer.lot), *price_ids(offer)):
             for figure in behind(identity, book.view.figures) if identity is not None else ():
                 if figure.id not in book.addresses and figure.id not in seen:
                     seen.add(figure.id)
                     yield figure.id
-
-
-def _price_ids(offer: OfferView) -> Iterator[str | None]:
-    """What the way of the price, its corrections and the contract price are made of."""
-    for step in offer.price_steps:
-        yield from (step.price, step.change)
-    for correction in offer.corrections:
-        yield from (correction.as_read, correction.corrected)
-    yield from (offer.contract_price, offer.total_without_preference)
 
 
 def _rules(book: Book, lot: LotView) -> dict[str, None]:
@@ -330,15 +331,38 @@ def _decimals(book: Book, ids: Iterable[str | None]) -> int:
     return decimals_of(*(book.figure(identity).value for identity in ids if identity is not None))
 
 
-def _rank(sheet: Sheet, cells: LotCells, position: int, offer: OfferView) -> None:
-    """Rank on rounded money, equal amounts alike; and the place in the order, in which ties keep their rows."""
+def _places_in_ties(book: Book, ranked: Iterable[OfferView]) -> list[int]:
+    """Place of each offer among those of the same total, as the announced order parted them; 0 for the first."""
+    ids = [(offer.lot.total_owning_cost, offer.rank or 0) for offer in ranked]
+    known = [(book.figure(identity).value, rank) for identity, rank in ids if identity is not None]
+    first: dict[Decimal, int] = {}
+    for total, rank in known:
+        first[total] = min(rank, first.get(total, rank))
+    return [rank - first[total] for total, rank in known]
+
+
+def _rank(sheet: Sheet, cells: LotCells, position: int, offer: OfferView, tie: int | None) -> None:
+    """Rank on rounded money, equal amounts alike; and the place in the order, in which ties keep their rows.
+
+    Where the announced order broke ties, the place in a tie is a value: it parts offers that are equal again.
+    """
     row = cells.lot_row + position
-    letters, rank = column_name(_TOTAL), f"{column_name(_RANK)}{row + 1}"
-    totals = f"ROUND({letters}${cells.lot_row + 1}:{letters}${cells.lot_row + cells.count},{cells.decimals})"
-    own = f"ROUND({letters}{row + 1},{cells.decimals})"
-    rows = f"ROW({letters}${cells.lot_row + 1}:{letters}${cells.lot_row + cells.count})"
-    sheet.formula(row, _RANK, f"=1+SUMPRODUCT(--({totals}<{own}))", float(offer.rank or 0), "total")
-    order = f"={rank}+SUMPRODUCT(({totals}={own})*({rows}<ROW()))"
+
+    def span(column: int) -> str:
+        letters = column_name(column)
+        return f"{letters}${cells.lot_row + 1}:{letters}${cells.lot_row + cells.count}"
+
+    rank = f"{column_name(_RANK)}{row + 1}"
+    totals = f"ROUND({span(_TOTAL)},{cells.decimals})"
+    own = f"ROUND({column_name(_TOTAL)}{row + 1},{cells.decimals})"
+    before, same = f"=1+SUMPRODUCT(--({totals}<{own}))", f"({totals}={own})"
+    if tie is not None:
+        key = f"{column_name(_TIE)}{row + 1}"
+        before += f"+SUMPRODUCT({same}*({span(_TIE)}<{key}))"
+        same += f"*({span(_TIE)}={key})"
+        sheet.number(row, _TIE, Decimal(tie), "helper")
+    sheet.formula(row, _RANK, before, float(offer.rank or 0), "total")
+    order = f"={rank}+SUMPRODUCT({same}*(ROW({span(_TOTAL)})<ROW()))"
     sheet.formula(row, _ORDER, order, float(position + 1), "helper")
 
 

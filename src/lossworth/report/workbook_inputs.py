@@ -55,6 +55,7 @@ def write_inputs(book: Book) -> None:
     for rule in book.view.rules:
         sheet.paragraph(rule)
     _exchange(book, sheet, linked)
+    _commercial(book, sheet, linked)
     for lot in book.view.lots:
         sheet.paragraph(f"Lot {lot.id} · {lot.description}", "band")
         sheet.paragraph("; ".join((f"Rated power {lot.rated_power}", *lot.limits)))
@@ -73,6 +74,22 @@ def _exchange(book: Book, sheet: Sheet, linked: dict[tuple[str, ...], str]) -> N
     sheet.paragraph(f"{exchange.source}; {exchange.kind}; {exchange.date}. Evidence: {exchange.evidence}")
     for _, identity in exchange.rates:
         _leaf(book, sheet, book.figure(identity), linked)
+
+
+def _commercial(book: Book, sheet: Sheet, linked: dict[tuple[str, ...], str]) -> None:
+    """Adders, margins, interest and tax that the tender announces and some price uses."""
+    offers = [offer for lot in book.view.lots for offer in lot.offers]
+    own = tuple(f"{price.rpartition('/')[0]}/" for offer in offers if (price := offer.contract_price) is not None)
+    leaves: dict[str, ShownFigure] = {}
+    for root in (identity for offer in offers for step in offer.price_steps for identity in (step.change, step.price)):
+        for figure in () if root is None else behind(root, book.view.figures):
+            if figure.operator == "read" and not figure.id.startswith(own) and figure.id not in book.addresses:
+                leaves.setdefault(figure.id, figure)
+    if not leaves:
+        return
+    sheet.paragraph("Commercial terms of the tender", "band")
+    for figure in leaves.values():
+        _leaf(book, sheet, figure, linked)
 
 
 def _leaves_of_lot(book: Book, lot: LotView) -> Iterator[ShownFigure]:

@@ -151,10 +151,8 @@ def _margins(book: Book, sheet: Sheet, lot: LotView, ranking: LotRanking, positi
     amount = None if margin is None else book.figure(margin.amount).value
     below = f"{column_name(_TOTAL)}{row + 2}"
     to_next = f"ROUND({below}-{total},{decimals})" if position + 1 < ranking.count else f'"{NOTHING}"'
-    sheet.formula(
-        row, _MARGIN, f"=IF({_ties(ranking, row)}>1,0,{to_next})", NOTHING if amount is None else amount, "total",
-        decimals,
-    )  # fmt: skip
+    to_nearest = f"=IF({_same_total(lot, ranking, row, decimals)}>1,0,{to_next})"
+    sheet.formula(row, _MARGIN, to_nearest, NOTHING if amount is None else amount, "total", decimals)
     percent = f'=IF(ISNUMBER({own}),IF({first}=0,0,ROUND(100*{own}/{first},2)),"{NOTHING}")'
     sheet.formula(row, _PERCENT, percent, NOTHING if margin is None else margin.percent_of_winner, "number", 2)
     for column, rate in ((_NO_LOAD_KW, lot.rates.no_load), (_LOAD_KW, lot.rates.load)):
@@ -165,6 +163,15 @@ def _ties(ranking: LotRanking, row: int) -> str:
     letters = column_name(_RANK)
     ranks = f"${letters}${ranking.row + 1}:${letters}${ranking.row + ranking.count}"
     return f"COUNTIF({ranks},${letters}{row + 1})"
+
+
+def _same_total(lot: LotView, ranking: LotRanking, row: int, decimals: int) -> str:
+    """Number of offers with the total of a row: those of its rank, unless the announced order parted some."""
+    if not any(offer.tie_decided_by for offer in lot.offers):
+        return _ties(ranking, row)
+    letters = column_name(_TOTAL)
+    totals = f"ROUND({letters}${ranking.row + 1}:{letters}${ranking.row + ranking.count},{decimals})"
+    return f"SUMPRODUCT(--({totals}=ROUND({letters}{row + 1},{decimals})))"
 
 
 def _margin_in_kw(

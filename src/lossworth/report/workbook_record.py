@@ -37,13 +37,13 @@ def write_findings(book: Book) -> None:
     sheet = Sheet(book, FINDINGS, "Findings", columns, "What the checks found in tender and bids, weightiest first.")
     for finding in book.view.findings:
         cells = (
-            finding.effect,
+            "waived" if finding.waiver else finding.effect,
             finding.title,
             finding.lot,
             finding.bidder,
             finding.place,
             finding.statement,
-            finding.remedy,
+            "" if finding.waiver else finding.remedy,
         )
         for column, text in enumerate(cells):
             sheet.text(sheet.row, column, text, "strong text" if column == 0 else "text")
@@ -79,10 +79,30 @@ def write_record(book: Book) -> None:
         sheet.text(sheet.row, 1, file.sha256)
         sheet.row += 1
     sheet.row += 1
+    _rules_proof(book, sheet)
     sheet.paragraph("Method", "band")
     for text in view.method:
         sheet.paragraph(text)
     sheet.finish()
+
+
+def _rules_proof(book: Book, sheet: Sheet) -> None:
+    """Whether the rules used are the rules published, and where they differ."""
+    proof = book.view.rules_proof
+    if proof is None:
+        return
+    sheet.paragraph("Rules used and rules published", "band")
+    sheet.paragraph(proof.sentence, "paragraph" if proof.holds else "assumption")
+    if proof.fingerprint and not proof.holds:
+        sheet.text(sheet.row, 0, "SHA-256 of the rules used")
+        sheet.text(sheet.row, 1, proof.fingerprint)
+        sheet.row += 1
+    for difference in proof.differences:
+        sheet.text(sheet.row, 0, difference.key)
+        published, used = difference.published or "not stated", difference.used or "not stated"
+        sheet.text(sheet.row, 1, f"published: {published}; used: {used}")
+        sheet.row += 1
+    sheet.row += 1
 
 
 def write_comparison(book: Book, cells: Mapping[str, LotCells]) -> str:

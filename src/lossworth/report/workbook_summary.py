@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping
 from decimal import Decimal
 
 from .view import LotView, OfferView
+from .workbook_contract import CONTRACT
 from .workbook_information import assuming
+from .workbook_prices import has_prices
 from .workbook_ranking import LotRanking
 from .workbook_record import AGREE
 from .workbook_sheet import NOTHING, Book, Column, Sheet
@@ -60,6 +62,8 @@ def write_summary(book: Book, rankings: Mapping[str, LotRanking], verdict: str) 
     sheet.row += 1
     for lot in view.lots:
         sheet.paragraph(f"Lot {lot.id}: {lot.recommendation}")
+        for sentence in _prices(book, lot):
+            sheet.paragraph(sentence, "quiet paragraph")
         if assuming(lot):
             sheet.paragraph(assuming(lot), "assumption")
     sheet.row += 1
@@ -74,6 +78,18 @@ def write_summary(book: Book, rankings: Mapping[str, LotRanking], verdict: str) 
     sheet.formula(sheet.row, 1, f"={verdict}", AGREE if _any_ranked(book) else "no offer is ranked", "verdict")
     sheet.row += 1
     sheet.finish()
+
+
+def _prices(book: Book, lot: LotView) -> Iterator[str]:
+    """What the contract would pay the first in rank, and the rank that it has without preference."""
+    for offer in lot.offers if has_prices(book.view) else ():
+        if offer.rank != 1:
+            continue
+        if offer.contract_price is not None:
+            price = book.figure(offer.contract_price)
+            yield f"Contract price of {offer.bidder}: {price.text} {price.unit} (sheet {CONTRACT})."
+        if offer.rank_without_preference not in (None, 1):
+            yield f"Without preference {offer.bidder} has rank {offer.rank_without_preference}."
 
 
 def _any_ranked(book: Book) -> bool:
