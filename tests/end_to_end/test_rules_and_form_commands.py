@@ -14,6 +14,11 @@ from lossworth.evaluation.rules_proof import compare_rules
 from lossworth.records.rules import PUBLISHED_RULES
 from support.tender_folders import TENDER, valid_tender, write_folder
 
+_WITHOUT_TABLES = """[rules]
+taxes = "excluded"
+payment_terms = "discount to a common date"
+preference = "margin added to other prices"
+"""
 _TIME = ["--as-of", "2026-08-01T10:00:00Z"]
 
 
@@ -56,6 +61,19 @@ def test_rules__publish_keeps_a_file_once(folder: Path, tmp_path: Path) -> None:
     assert again.exit_code == 2
     assert "published rules are never replaced" in again.output
     assert kept == (folder / PUBLISHED_RULES).read_text(encoding="utf-8")
+
+
+def test_rules__publish_refuses_rules_that_cannot_work(tmp_path: Path) -> None:
+    """Nothing is written, and every gap is named; without the option the sheet shows them."""
+    folder = write_folder(tmp_path / "tender", tender=TENDER.replace("[rules]\n", _WITHOUT_TABLES, 1), bids={})
+    refused = run("rules", folder, "--publish")
+    assert refused.exit_code == 2
+    assert "Nothing is published" in refused.output
+    for table in ("[taxes]", "[payment]", "[preference]"):
+        assert table in refused.output
+    assert not (folder / PUBLISHED_RULES).exists()
+    assert not (folder / "papers").exists()
+    assert run("rules", folder).exit_code == 0
 
 
 def test_rules__a_tender_file_alone_and_another_folder_for_papers(folder: Path, tmp_path: Path) -> None:

@@ -79,7 +79,7 @@ def test_page_html__contract_price_apart_from_evaluated_price(view: EvaluationVi
     assert offer.contract_price is not None
     assert offer.lot.evaluated_price is not None
     contract, evaluated = view.figures[offer.contract_price], view.figures[offer.lot.evaluated_price]
-    assert f"{HOSTILE_NAME} {contract.text} FCU {evaluated.text} NCU" in table(html, "contract")
+    assert f"{HOSTILE_NAME} {contract.text} FCU tax included {evaluated.text} NCU" in table(html, "contract")
     assert "The contract pays the contract price" in html
     assert "The contract pays the price that the bidder quotes" not in html
     assert "contract price of the lot" in table(html, "summary")
@@ -103,7 +103,7 @@ def test_page_html__decisions_with_who_and_when(html: str) -> None:
     text = " ".join("".join(HtmlReader(f"<p>{section}").text).split())
     assert "Waive delivery-too-late lot 1 Damsonby letter of the bidder By the committee on 2026-09-25" in text
     assert "Change status: non-responsive lot 2 Hazel" in text
-    assert "evidence: file 7 decisions.toml:33" in text
+    assert "evidence: file 7 Used. decisions.toml:33" in text
 
 
 def test_page_html__waived_findings_and_questions_apart(html: str) -> None:

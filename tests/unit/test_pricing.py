@@ -7,6 +7,9 @@ from itertools import pairwise
 
 import pytest
 
+from lossworth.errors import EvaluationStopped
+from lossworth.evaluation.evaluate import evaluate
+from lossworth.evaluation.price_adders import point_term
 from lossworth.records.tender import RoundingPoint
 from lossworth.trail import Operation, walk
 from support import commercial as make
@@ -250,3 +253,26 @@ def test_unit_price__operations_recompute():
     root = make.only(tender, offer).lot.total_owning_cost
     names = {figure.source.operator.value for figure in walk(root) if isinstance(figure.source, Operation)}
     assert {"product", "sum", "difference", "quotient"} <= names
+
+
+def test_unit_price__one_percent_sign_in_the_label():
+    """A discount that has its sign in the cell is shown with one."""
+    discount = make.quantity("5").model_copy(update={"text": "5 %"})
+    tender = make.tender(settings={"unconditional_discounts": "deduct"})
+    found = make.only(tender, make.bid(unconditional_discount_percent=discount))
+    assert found.price_steps[1].label == "unconditional discount of 5 %"
+
+
+@pytest.mark.parametrize("point", ["DDP, site", "site (DDP)", "Site,DDP"])
+def test_point_term__among_other_signs(point):
+    """The term of the delivered point is found whatever stands beside it."""
+    assert point_term(make.tender(delivered_point=make.entry(point))) == "DDP"
+    assert point_term(make.tender(delivered_point=make.entry("ADDPT site"))) is None
+
+
+def test_check_delivered_point__without_a_term():
+    """Adders that lead to no term stop the evaluation."""
+    tender = make.tender(delivered_point=make.entry("site"), delivery_levels=(make.level("EXW", "4"),))
+    with pytest.raises(EvaluationStopped) as stopped:
+        evaluate(tender, [make.bid()])
+    assert [(f.kind, f.field) for f in stopped.value.findings] == [("tender-value", "delivery.point")]

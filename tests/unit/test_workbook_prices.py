@@ -64,8 +64,8 @@ def test_workbook_bytes__commercial_terms_are_inputs(shown: Cells) -> None:
 def test_workbook_bytes__contract_price_apart(path: Path, shown: Cells) -> None:
     """Contract price in the currency of the bid beside the evaluated price, and both ranks."""
     number = row_of(path, "Contract prices", "A", HOSTILE_NAME)
-    assert row(shown, "Contract prices", number, "H") == [
-        HOSTILE_NAME, 29172.27, "FCU", 44551.44, 65671.44, 3, 62937.91, 1
+    assert row(shown, "Contract prices", number, "I") == [
+        HOSTILE_NAME, 29172.27, "FCU", "tax included", 44551.44, 65671.44, 3, 62937.91, 1
     ]  # fmt: skip
 
 

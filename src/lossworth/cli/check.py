@@ -28,9 +28,10 @@ def check(tender: Path, bids: tuple[Path, ...]) -> None:
         raise EvaluationStopped(reading.findings)
     from ..evaluation.evaluate import evaluate
     from ..evaluation.result import Status
+    from ..report.build_told_findings import told_findings
 
     evaluation = evaluate(reading.tender, reading.offers, reading.findings, reading.decisions)
-    echo_findings(evaluation.findings)
+    echo_findings(told_findings(evaluation))
     statuses = [offer.status for lot in evaluation.lots for offer in lot.offers]
     counts = ", ".join(
         f"{statuses.count(status)} {word}"

@@ -48,6 +48,7 @@ def evaluate(tender: Path, bids: tuple[Path, ...], papers: Path | None, overwrit
 
     from ..evaluation.evaluate import evaluate as evaluate_tender
     from ..evaluation.rules_proof import compare_rules, rules_findings
+    from ..report.build_told_findings import told_findings
     from ..report.build_view import build_view
     from ..report.terminal import evaluation_text
     from .findings_text import echo_findings
@@ -62,7 +63,7 @@ def evaluate(tender: Path, bids: tuple[Path, ...], papers: Path | None, overwrit
     view = build_view(evaluation, record, proof)
     contents = _contents(view) | _questions(evaluation, reading, record)
     write_all(folder, contents, whole_folders=_FOLDERS)
-    echo_findings(evaluation.findings)
+    echo_findings(told_findings(evaluation))
     click.echo(evaluation_text(view, width(), color=color()))
     click.echo(f"Papers in {folder}: {', '.join(contents)}")
 

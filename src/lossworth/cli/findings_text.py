@@ -20,7 +20,7 @@ _HEADINGS = {
 
 
 def echo_findings(findings: Iterable[Finding]) -> None:
-    """Print findings to the error stream, grouped by weight.
+    """Print findings to the error stream, grouped by weight, each with the short name that a waiver needs.
 
     Parameters
     ----------
@@ -30,5 +30,10 @@ def echo_findings(findings: Iterable[Finding]) -> None:
     for effect, group in groupby(findings, key=lambda finding: finding.effect):
         click.echo(click.style(_HEADINGS[effect], bold=True), err=True)
         for finding in group:
-            click.echo(f"{finding}", err=True)
+            click.echo(_with_short_name(finding), err=True)
         click.echo(err=True)
+
+
+def _with_short_name(finding: Finding) -> str:
+    told, _, remedy = str(finding).partition("\n")
+    return f"{told} [{finding.kind}]\n{remedy}"

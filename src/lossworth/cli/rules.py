@@ -11,6 +11,7 @@ from .paper_options import paper_options
 
 __all__ = ["rules"]
 
+_TO_MEND = "Complete the tender file, or take the rule out of it; without --publish the sheet is written as it is."
 _PAGE, _DATA = "rules.html", "rules.json"
 _AMENDED = "If the tender is published anew, move the file into the record of the tender first."
 
@@ -44,6 +45,9 @@ def rules(tender: Path, papers: Path | None, overwrite: bool, publish: bool, as_
     from ..report.rules_sheet import rules_html, rules_json, rules_text
 
     view = build_rules(reading.tender, version("lossworth"), time.strftime("%Y-%m-%dT%H:%M:%SZ"))
+    if publish and view.gaps:
+        gaps = "".join(f"\n  - {gap}" for gap in view.gaps)
+        raise click.UsageError(f"Nothing is published: announced rules lack what they need.{gaps}\n{_TO_MEND}")
     home = tender if tender.is_dir() else tender.parent
     folder = papers or home / PAPERS
     if publish and (home / PUBLISHED_RULES).exists():

@@ -111,7 +111,7 @@ RULE_KINDS: tuple[RuleKind, ...] = (
         {
             "correct": "Arithmetic errors are corrected by the rules below, and the bidder is told.",
             "reject": "The price as read out is final; an offer with an arithmetic error is rejected.",
-            "take as read": "Prices are evaluated as read out; arithmetic errors are not corrected.",
+            "take as read": "The unit price as read is evaluated; arithmetic errors are not corrected.",
         },
         "World Bank standard bidding documents for goods (from memory) correct; a clause in Kenyan tenders makes the "
         "sum as read final",

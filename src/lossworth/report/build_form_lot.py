@@ -19,9 +19,9 @@ from ..records.rules import AnnouncedRules
 from ..records.tender import CoolingValuation, Lot, Tender
 from ..units import LOSS_UNITS
 from .bid_form_view import Answer, FormCell, FormColumn, FormLot
-from .build_rules_lot import limit_phrases
 from .figure_text import value_text
 from .formats import as_stated, plain
+from .wording import limits
 
 __all__ = ["form_columns", "form_lots"]
 
@@ -105,7 +105,7 @@ def form_lots(tender: Tender, rules: AnnouncedRules) -> tuple[FormLot, ...]:
                 cooling=one_line(lot.cooling.value),
                 quantity=lot.quantity.value,
                 valued=_valued(tender, lot),
-                limits="; ".join(limit_phrases(lot)) or "none",
+                limits="; ".join(limits(lot)) or "none",
                 cells=cells,
                 least_efficiency_percent=None if least is None else least.value,
                 power_in_loss_unit=ARITHMETIC.divide(lot.rated_power_kva.value, times),

@@ -3,10 +3,11 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
+from decimal import Decimal
 
 from ..evaluation.clerical_errors_suspicion import ASK, LABELS, Supposition, Suspicion
-from ..evaluation.result import Status
-from ..evaluation.suppositions import SupposedOffer, SupposedRanking
+from ..evaluation.result import LotEvaluation, Status
+from ..evaluation.suppositions import SupposedRanking
 from ..findings import KINDS, one_line
 from ..records.tender import Tender
 from .formats import amount
@@ -96,49 +97,65 @@ def _supposition(supposition: Supposition) -> SuppositionView:
 
 
 def _case(ranking: SupposedRanking, suspicions: Sequence[Suspicion], currency: str) -> CaseView:
-    lot = ranking.before.lot
+    lot, compared = ranking.before.lot, _compared(ranking)
     return CaseView(
         lot=one_line(lot.id),
         description=one_line(lot.description.value),
         suspicions=tuple(n for n, each in enumerate(suspicions, start=1) if each in ranking.suspicions),
-        sentence=_sentence(ranking, currency),
-        offers=tuple(_compared(each) for each in ranking.offers),
+        sentence=_sentence(ranking, compared, currency),
+        offers=compared,
+        is_of_lot=_is_of_lot(ranking),
     )
 
 
-def _compared(offer: SupposedOffer) -> ComparedOfferView:
-    before, after = offer.per_unit_before, offer.per_unit_after
-    return ComparedOfferView(
-        offer=one_line(offer.name),
-        is_suspected=offer.is_suspected,
-        status_before=offer.status_before.value,
-        status_after=offer.status_after.value,
-        rank_before=offer.rank_before,
-        rank_after=offer.rank_after,
-        total_before=before.value if before else None,
-        total_after=after.value if after else None,
+def _is_of_lot(ranking: SupposedRanking) -> bool:
+    """Whether further items count: the rank is then that of the lot, which amounts of a unit would contradict."""
+    return any(item.counts for item in ranking.before.lot.items)
+
+
+def _compared(ranking: SupposedRanking) -> tuple[ComparedOfferView, ...]:
+    before, after = _totals(ranking, ranking.before), _totals(ranking, ranking.after)
+    return tuple(
+        ComparedOfferView(
+            offer=one_line(offer.name),
+            is_suspected=offer.is_suspected,
+            status_before=offer.status_before.value,
+            status_after=offer.status_after.value,
+            rank_before=offer.rank_before,
+            rank_after=offer.rank_after,
+            total_before=before.get(offer.name),
+            total_after=after.get(offer.name),
+        )
+        for offer in ranking.offers
     )
 
 
-def _sentence(ranking: SupposedRanking, currency: str) -> str:
+def _totals(ranking: SupposedRanking, lot: LotEvaluation | None) -> dict[str, Decimal]:
+    """Total owning costs by name of the offer: of the lot where items count, else of one unit."""
+    costs = [(o.name, o.lot if _is_of_lot(ranking) else o.per_unit) for o in (lot.offers if lot else ())]
+    return {name: cost.total_owning_cost.value for name, cost in costs if cost.total_owning_cost is not None}
+
+
+def _sentence(ranking: SupposedRanking, compared: Sequence[ComparedOfferView], currency: str) -> str:
     if ranking.after is None:
         return one_line(f"With the supposed figures the evaluation would stop: {ranking.why_none}.")
-    changed = " ".join(_change(each, currency) for each in ranking.offers if each.is_suspected)
+    scope = "for the lot" if _is_of_lot(ranking) else "per unit"
+    changed = " ".join(_change(each, currency, scope) for each in compared if each.is_suspected)
     before, after = (_names(names) for names in (ranking.first_before, ranking.first_after))
     if before == after:
         return one_line(f"{changed} {after} would stay first." if after else f"{changed} Nobody would be ranked.")
     return one_line(f"{changed} First would be {after or 'nobody'} in place of {before or 'nobody'}.")
 
 
-def _change(offer: SupposedOffer, currency: str) -> str:
-    after = offer.per_unit_after
+def _change(offer: ComparedOfferView, currency: str, scope: str) -> str:
+    after = offer.total_after
     if after is None:
-        return f"{offer.name} would not have a total owning cost."
-    money = f"{currency} {amount(after.value, max(0, -int(after.value.as_tuple().exponent)))} per unit"
-    if offer.status_after is not Status.RANKED:
-        return f"{offer.name} would come to {money} and be {offer.status_after.value}."
-    was = f"{offer.status_before.value}" if offer.rank_before is None else f"rank {offer.rank_before}"
-    return f"{offer.name} would come to {money}, rank {offer.rank_after} ({was} as evaluated)."
+        return f"{offer.offer} would not have a total owning cost."
+    money = f"{currency} {amount(after, max(0, -int(after.as_tuple().exponent)))} {scope}"
+    if offer.status_after != Status.RANKED.value:
+        return f"{offer.offer} would come to {money} and be {offer.status_after}."
+    was = offer.status_before if offer.rank_before is None else f"rank {offer.rank_before}"
+    return f"{offer.offer} would come to {money}, rank {offer.rank_after} ({was} as evaluated)."
 
 
 def _capital(sentence: str) -> str:

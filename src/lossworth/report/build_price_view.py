@@ -3,14 +3,16 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from decimal import Decimal
 
 from ..evaluation.result import Correction, EvaluatedOffer, PriceStep
 from ..findings import one_line
+from ..money import ARITHMETIC
 from ..records.decision import Decision
-from ..trail import Figure
+from ..trail import Figure, Operation, Operator
 from .view import CorrectionView, PriceStepView
 
-__all__ = ["correction_views", "decision_sentence", "price_roots", "price_step_views"]
+__all__ = ["correction_views", "decision_sentence", "items_price", "price_roots", "price_step_views"]
 
 
 def price_roots(offer: EvaluatedOffer) -> Iterator[Figure]:
@@ -34,6 +36,30 @@ def price_roots(offer: EvaluatedOffer) -> Iterator[Figure]:
         yield correction.as_read
         yield correction.corrected
     yield from (figure for figure in (offer.contract_price, offer.total_without_preference) if figure is not None)
+
+
+def items_price(offer: EvaluatedOffer) -> Decimal | None:
+    """What the further items add to the evaluated price of the lot.
+
+    Parameters
+    ----------
+    offer : EvaluatedOffer
+        One offer.
+
+    Returns
+    -------
+    Decimal or None
+        Whatever stands beside the price of all units; None where nothing does. [evaluation currency]
+    """
+    price = offer.lot.evaluated_price
+    if price is None or not any(step.scope == "lot" for step in offer.price_steps):
+        return None
+    if not isinstance(price.source, Operation) or price.source.operator is not Operator.SUM:
+        return None
+    total = Decimal(0)
+    for item in price.source.operands[1:]:
+        total = ARITHMETIC.add(total, item.value)
+    return total
 
 
 def price_step_views(offer: EvaluatedOffer) -> tuple[PriceStepView, ...]:

@@ -34,7 +34,7 @@ _CAUTION = (
     "govern; a licensed engineer decides on technical matters."
 )
 #: Kinds beside those of apparent errors whose remedy is a question to the bidder.
-_OTHER_QUESTIONS = ("loss-basis-differs",)
+_OTHER_QUESTIONS = ("loss-basis-differs", "cooling-differs")
 #: A letter shows neither this amount nor the header of its column.
 _MONEY = "unit_price"
 _SHORTEST_WORD = 4

@@ -2,33 +2,45 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Collection, Mapping
 
+from ..evaluation.result import Evaluation
 from ..evaluation.rules_proof import RulesProof
-from ..findings import one_line
+from ..findings import Place, one_line
 from ..records.decision import Decision
 from .view import DecisionView, RuleDifferenceView, RulesProofView
 
 __all__ = ["decision_views", "rules_proof_view"]
 
 
-def decision_views(decisions: Iterable[Decision]) -> tuple[DecisionView, ...]:
-    """Decisions in the order of their file.
+_UNUSED = frozenset({"decision-not-applied", "confirmation-not-allowed", "decision-superseded"})
+
+
+def decision_views(evaluation: Evaluation) -> tuple[DecisionView, ...]:
+    """Decisions in the order of their file, each with whether it was used.
 
     Parameters
     ----------
-    decisions : iterable of Decision
-        As read.
+    evaluation : Evaluation
+        With its decisions, and the findings on those that were not used.
 
     Returns
     -------
     tuple of DecisionView
         With harmless texts.
     """
-    return tuple(_decision(decision) for decision in decisions)
+    used = [decision for lot in evaluation.lots for offer in lot.offers for decision in offer.decisions]
+    why = {finding.place: finding.rule for finding in evaluation.findings if finding.kind in _UNUSED}
+    return tuple(_decision(each, _outcome(each, used, why)) for each in evaluation.decisions)
 
 
-def _decision(decision: Decision) -> DecisionView:
+def _outcome(decision: Decision, used: Collection[Decision], why: Mapping[Place | None, str]) -> str:
+    if decision.place in why and decision not in used:
+        return one_line(f"not used, because it {why[decision.place]}")
+    return "used"
+
+
+def _decision(decision: Decision, outcome: str) -> DecisionView:
     value = "" if decision.value is None else f"{decision.value.text} {decision.value.unit}"
     if decision.status is not None:
         value = decision.status
@@ -45,6 +57,7 @@ def _decision(decision: Decision) -> DecisionView:
         when=decision.when.isoformat(),
         evidence=one_line(decision.evidence.value),
         place=str(decision.place),
+        outcome=outcome,
     )
 
 

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 from decimal import Decimal
 
+from ..evaluation.price_adders import point_term
 from ..evaluation.rules_content import fingerprint, rules_content
 from ..findings import one_line
 from ..money import ARITHMETIC
@@ -19,6 +20,7 @@ from .wording import CAUTIONS, METHOD
 
 __all__ = ["build_rules", "payment_phrases"]
 
+_DISCOUNTED, _MARGIN = "discount to a common date", "margin added to other prices"
 _PARTS = {
     RoundingPoint.PART_PER_UNIT: "Each part of the cost of one unit",
     RoundingPoint.PART_PER_LOT: "Each part of the cost of a lot",
@@ -58,7 +60,7 @@ def build_rules(tender: Tender, tool_version: str, generated_at: str) -> RulesVi
         profile=_profile(announced),
         sections=(
             RulesSection("How offers are compared", tuple(_comparison(tender))),
-            RulesSection("Prices and terms", tuple(_prices(tender))),
+            RulesSection("Prices and terms", tuple(_prices(tender, settled))),
         ),
         rules=tuple(_rules(announced, settled)),
         silent_rules=tuple(
@@ -66,7 +68,7 @@ def build_rules(tender: Tender, tool_version: str, generated_at: str) -> RulesVi
             for kind in RULE_KINDS
             if getattr(settled, kind.key) is None
         ),
-        silent=tuple(_silent(tender)),
+        silent=tuple(_silent(tender, settled)),
         gaps=tuple(_gaps(tender, settled)),
         lots=lot_rules(tender),
         content=content,
@@ -125,7 +127,7 @@ def _sentence(kind: RuleKind, settled: AnnouncedRules) -> str:
     return sentence
 
 
-def _prices(tender: Tender) -> Iterator[str]:
+def _prices(tender: Tender, settled: AnnouncedRules) -> Iterator[str]:
     currency = tender.identity.currency.value
     yield f"The evaluation currency is {currency}. The rates of losses are in {currency}; only prices are converted."
     if tender.exchange is not None:
@@ -138,8 +140,8 @@ def _prices(tender: Tender) -> Iterator[str]:
     yield from _delivery(tender)
     if tender.taxes is not None:
         yield f"Prices are brought to one basis by the tax rate of {as_stated(tender.taxes.rate_percent.value)} %."
-    yield from _payments(tender)
-    if tender.preference is not None:
+    yield from _payments(tender, settled)
+    if tender.preference is not None and settled.preference == _MARGIN:
         yield (
             f"Preference: {as_stated(tender.preference.margin_percent.value)} % is added, for comparison only, to the "
             f"prices of offers outside the group “{one_line(tender.preference.group.value)}”; never to losses."
@@ -181,37 +183,62 @@ def payment_phrases(terms: PaymentTerms) -> str:
     return ", ".join(phrases)
 
 
-def _payments(tender: Tender) -> Iterator[str]:
+def _payments(tender: Tender, settled: AnnouncedRules) -> Iterator[str]:
     terms = tender.payment_terms
     if terms is None:
         return
-    yield (
-        f"The tender pays {payment_phrases(terms)}. The interest rate for other terms is "
-        f"{as_stated(terms.interest_rate_percent.value)} % a year."
-    )
+    pays = f"The tender pays {payment_phrases(terms)}. " if terms.payments else ""
+    rate = f"The interest rate for other terms is {as_stated(terms.interest_rate_percent.value)} % a year."
+    if stated := f"{pays}{rate if settled.payment_terms == _DISCOUNTED else ''}".strip():
+        yield stated
 
 
-def _silent(tender: Tender) -> Iterator[str]:
+def _silent(tender: Tender, settled: AnnouncedRules) -> Iterator[str]:
     """What no rule of the list covers, and the tender does not announce either."""
     if tender.exchange is None:
         yield f"No exchange rate: a price in another currency than {tender.identity.currency} cannot be evaluated."
-    if not tender.delivery_levels:
+    if not tender.delivery_levels and tender.delivered_point is None:
         yield "No adders for other price terms: all prices are taken as delivered alike."
+    elif not tender.delivery_levels:
+        yield "No adders for other price terms: an offer under another delivery term is not evaluated."
     if tender.payment_terms is None:
         yield "No payment schedule and no interest rate."
     if tender.preference is None:
         yield "No preference."
+    elif settled.preference == "none":
+        yield f"No preference: the margin at {tender.preference.place} is not used, since the rule applies none."
     if tender.planned_award is None:
         yield "No planned day of award: the validity of bids is not compared with it."
 
 
 def _gaps(tender: Tender, settled: AnnouncedRules) -> Iterator[str]:
     """A rule that is announced and cannot be applied as it stands."""
-    if settled.payment_terms == "discount to a common date" and tender.payment_terms is None:
+    terms = tender.payment_terms
+    if settled.payment_terms == _DISCOUNTED and terms is None:
         yield "Payments are to be discounted, but the tender states no interest rate and no schedule ([payment])."
-    if settled.preference == "margin added to other prices" and tender.preference is None:
+    elif settled.payment_terms == _DISCOUNTED and terms is not None and not terms.payments:
+        yield "Payments are to be discounted, but the tender states no schedule of its own ([[payment.part]])."
+    if settled.preference == _MARGIN and tender.preference is None:
         yield "A preference margin is to be added, but the tender states none ([preference])."
+    if settled.preference is None and tender.preference is not None:
+        yield "The tender states a preference margin, but no rule says whether it is added (rules.preference)."
     if settled.exchange_rate_day == "days before opening" and settled.exchange_rate_days_before is None:
         yield "The exchange rate is that of some days before opening, but the tender does not say how many."
     if settled.taxes is not None and tender.taxes is None:
         yield f"Taxes are to be {settled.taxes}, but the tender states no rate ([taxes])."
+    yield from _gaps_of_delivery(tender)
+
+
+def _gaps_of_delivery(tender: Tender) -> Iterator[str]:
+    if tender.delivered_point is not None and not tender.delivery_levels and point_term(tender) is None:
+        yield (
+            f"Prices are compared at {one_line(tender.delivered_point.value)}, which names no delivery term, and no "
+            "term has an adder ([[delivery.level]]): no offer that states its term could be evaluated."
+        )
+    for lot in tender.lots:
+        adder = lot.delivery_adder_percent_per_week or lot.delivery_adder_per_week
+        if adder is not None and lot.delivery_without_adder_weeks is None:
+            yield (
+                f"Lot {lot.id} adds to the price for each week of delivery, but does not say after which week "
+                "(delivery_without_adder_weeks)."
+            )

@@ -10,14 +10,13 @@ from ..evaluation.load_and_price import check_load_and_price
 from ..evaluation.lot_rates import lot_rates
 from ..evaluation.rules_content import rules_content
 from ..findings import one_line
-from ..records.commercial import RegulationLimit
 from ..records.tender import CoolingValuation, Lot, Tender
 from .figure_text import value_text
 from .formats import as_stated
 from .rules_view import LotRulesView
 from .wording import formulas, limits
 
-__all__ = ["limit_phrases", "lot_rules"]
+__all__ = ["lot_rules"]
 
 _LIMITS = {
     "maximum_no_load_loss_kw": "no-load loss",
@@ -151,41 +150,9 @@ def _basis(lot: Lot) -> Iterator[str]:
         yield "No conversion from another basis is allowed."
 
 
-def limit_phrases(lot: Lot) -> tuple[str, ...]:
-    """Every limit of a lot that an offer must keep.
-
-    Parameters
-    ----------
-    lot : Lot
-        One lot.
-
-    Returns
-    -------
-    tuple of str
-        A phrase each; none where the tender sets no limit.
-    """
-    phrases = list(limits(lot))
-    if lot.maximum_sound_level_db is not None:
-        phrases.append(f"sound level at most {as_stated(lot.maximum_sound_level_db.value)} dB(A)")
-    if lot.accepted_liquids:
-        phrases.append(f"insulating liquid {' or '.join(map(one_line, lot.accepted_liquids))}")
-    if lot.pcb_free_required:
-        phrases.append("liquid declared free of PCB")
-    if lot.regulation is not None:
-        phrases.append(f"the limits of {_regulation(lot.regulation)}, with no tolerance on the guarantee")
-    return tuple(phrases)
-
-
 def _limits(lot: Lot) -> Iterator[str]:
-    if phrases := limit_phrases(lot):
+    if phrases := limits(lot):
         yield f"An offer is responsive only within these limits: {'; '.join(phrases)}."
-
-
-def _regulation(stated: RegulationLimit) -> str:
-    parts = [f"{stated.regulation}, {one_line(stated.equipment.value)}"]
-    parts += [f"tier {stated.tier}"] if stated.tier is not None else []
-    parts += [f"placed on the market {stated.date.isoformat()}"] if stated.date is not None else []
-    return ", ".join(parts)
 
 
 def _adders(lot: Lot, currency: str) -> Iterator[str]:

@@ -25,8 +25,9 @@ from ..records.bid import Offer
 from ..records.quantity import Quantity
 from ..records.tender import Lot, Tender
 from ..trail import Figure
-from .build_price_view import correction_views, decision_sentence, price_roots, price_step_views
+from .build_price_view import correction_views, decision_sentence, items_price, price_roots, price_step_views
 from .build_record_view import decision_views, rules_proof_view
+from .build_told_findings import told_findings
 from .figure_text import shown_figures
 from .formats import as_stated
 from .view import (
@@ -73,6 +74,7 @@ _COLUMNS = (
     ("load", "load, present value", "{currency}/kW"),
     ("auxiliary", "auxiliary, present value", "{currency}/kW"),
 )
+_TAX = {True: "tax included", False: "without tax", None: "tax not stated"}
 _SIX_DIGITS = Context(prec=6, rounding=ROUND_HALF_UP)
 
 
@@ -109,11 +111,11 @@ def build_view(evaluation: Evaluation, record: RecordView, proof: RulesProof | N
         cautions=CAUTIONS,
         lots=tuple(_lot(tender, lot, evaluation) for lot in evaluation.lots),
         exchange=_exchange(tender, evaluation),
-        findings=tuple(_finding(finding) for finding in evaluation.findings),
+        findings=tuple(_finding(finding) for finding in told_findings(evaluation)),
         record=record,
         figures=shown_figures(_roots(evaluation), currency),
         rules_proof=rules_proof_view(proof),
-        decisions=decision_views(evaluation.decisions),
+        decisions=decision_views(evaluation),
     )
 
 
@@ -158,7 +160,7 @@ def _lot(tender: Tender, lot: LotEvaluation, evaluation: Evaluation) -> LotView:
         limits=limits(lot.lot),
         rates=_rates(tender, lot),
         offers=tuple(_offer(offer, lot, evaluation) for offer in lot.offers),
-        recommendation=lot_recommendation(lot, currency),
+        recommendation=lot_recommendation(lot, currency, tender.rules.announced.tie_order or ()),
     )
 
 
@@ -277,6 +279,8 @@ def _offer(offer: EvaluatedOffer, lot: LotEvaluation, evaluation: Evaluation) ->
         rank_without_preference=offer.rank_without_preference,
         tie_decided_by=offer.tie_decided_by or "",
         decisions=tuple(decision_sentence(decision) for decision in offer.decisions),
+        items_price=items_price(offer),
+        tax_note=_TAX[offer.offer.terms.tax_included],
     )
 
 

@@ -55,12 +55,17 @@ def value_text(figure: Figure, currency: str) -> str:
         Money with at least two places, other numbers with the digits that they have, long ones shortened.
     """
     value = figure.value
-    if figure.unit == currency or figure.unit.startswith(f"{currency}/k"):
+    if figure.unit == currency or figure.unit.startswith(f"{currency}/k") or _is_foreign_money(figure):
         places = max(2, -int(value.normalize().as_tuple().exponent))
         return amount(value, min(places, 6))
     if len(value.as_tuple().digits) > _LONG:
         value = +value.quantize(Decimal(1).scaleb(max(value.adjusted() - _LONG + 1, -_LONG)))
     return as_stated(value) if isinstance(figure.source, Place) else number(value)
+
+
+def _is_foreign_money(figure: Figure) -> bool:
+    """Whether the unit is another currency: three capitals, as their codes are."""
+    return len(figure.unit) == 3 and figure.unit.isalpha() and figure.unit.isupper() and figure.unit != "MVA"
 
 
 def _with_unit(figure: Figure, currency: str) -> str:

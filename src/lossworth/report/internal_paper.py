@@ -15,6 +15,7 @@ __all__ = ["INTERNAL_FOLDER", "INTERNAL_PAPER", "internal_paper_html", "internal
 #: Folder of the paper inside that of the papers, and its name without ending.
 INTERNAL_FOLDER, INTERNAL_PAPER = "internal", "suppositions"
 FORMAT_VERSION = 1
+_TOTAL = {False: "total_owning_cost_per_unit", True: "total_owning_cost_of_lot"}
 
 
 def internal_paper_html(paper: InternalPaperView) -> str:
@@ -95,21 +96,22 @@ def _case(case: CaseView) -> dict[str, Any]:
         "lot": case.lot,
         "suspicions": list(case.suspicions),
         "sentence": case.sentence,
-        "offers": [_offer(each) for each in case.offers],
+        "offers": [_offer(each, _TOTAL[case.is_of_lot]) for each in case.offers],
     }
 
 
-def _offer(offer: ComparedOfferView) -> dict[str, Any]:
+def _offer(offer: ComparedOfferView, total: str) -> dict[str, Any]:
     return {
         "offer": offer.offer,
         "supposed": offer.is_suspected,
-        "as_evaluated": _side(offer.status_before, offer.rank_before, offer.total_before),
-        "if_right": _side(offer.status_after, offer.rank_after, offer.total_after),
+        "as_evaluated": _side(offer.status_before, offer.rank_before, {total: offer.total_before}),
+        "if_right": _side(offer.status_after, offer.rank_after, {total: offer.total_after}),
     }
 
 
-def _side(status: str, rank: int | None, total: Decimal | None) -> dict[str, Any]:
-    return {"status": status, "rank": rank, "total_owning_cost_per_unit": None if total is None else plain(total)}
+def _side(status: str, rank: int | None, totals: dict[str, Decimal | None]) -> dict[str, Any]:
+    shown = {name: None if total is None else plain(total) for name, total in totals.items()}
+    return {"status": status, "rank": rank, **shown}
 
 
 def _money(value: Decimal | None) -> str:

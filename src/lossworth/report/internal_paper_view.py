@@ -65,7 +65,7 @@ class ComparedOfferView:
     rank_before, rank_after : int or None
         Ranks.
     total_before, total_after : Decimal or None
-        Total owning cost of one unit. [evaluation currency]
+        Total owning cost of one unit, or of the lot where `CaseView.is_of_lot`. [evaluation currency]
     """
 
     offer: str
@@ -92,6 +92,8 @@ class CaseView:
         What would change, in one or two sentences.
     offers : tuple of ComparedOfferView
         In the order after; empty where the evaluation would stop.
+    is_of_lot : bool
+        Whether amounts are those of the lot: where further items count, they decide the rank too.
     """
 
     lot: str
@@ -99,6 +101,7 @@ class CaseView:
     suspicions: tuple[int, ...]
     sentence: str
     offers: tuple[ComparedOfferView, ...]
+    is_of_lot: bool = False
 
 
 @dataclass(frozen=True, slots=True)

@@ -68,6 +68,7 @@ class _LotSheet:
     non_responsive: tuple[_OfferSheet, ...]
     not_evaluated: tuple[_OfferSheet, ...]
     chart: StackedBars | None
+    chart_is_of_lot: bool
     rates: RatesSheet
     information: _Information | None
     prices: tuple[PriceTable, ...]
@@ -154,7 +155,8 @@ def _lot_sheet(figures: Mapping[str, ShownFigure], lot: LotView, anchor: str) ->
         ranked=ranked,
         non_responsive=_with_status(sheets, "non-responsive"),
         not_evaluated=_with_status(sheets, "not evaluated"),
-        chart=stacked_bars([_stacked_cost(figures, sheet.offer) for sheet in ranked]) if ranked else None,
+        chart=_chart(figures, ranked),
+        chart_is_of_lot=_has_items(ranked),
         rates=rates_sheet(figures, lot, anchor),
         information=_information(sheets),
         prices=price_tables(figures, ((sheet.offer, sheet.anchors) for sheet in sheets)),
@@ -209,14 +211,39 @@ def _ids(costs: CostView) -> list[str]:
     return [key for key in (getattr(costs, name) for name in _AMOUNTS) if key]
 
 
-def _stacked_cost(figures: Mapping[str, ShownFigure], offer: OfferView) -> StackedCost:
-    total = offer.per_unit.total_owning_cost
+def _has_items(ranked: Iterable[_OfferSheet]) -> bool:
+    return any(sheet.offer.has_items for sheet in ranked)
+
+
+def _chart(figures: Mapping[str, ShownFigure], ranked: tuple[_OfferSheet, ...]) -> StackedBars | None:
+    """Costs of one unit; of the lot where further items count, since they decide the rank too."""
+    if not ranked:
+        return None
+    of_lot = _has_items(ranked)
+    return stacked_bars([_stacked_cost(figures, sheet.offer, of_lot=of_lot) for sheet in ranked])
+
+
+def _stacked_cost(figures: Mapping[str, ShownFigure], offer: OfferView, *, of_lot: bool) -> StackedCost:
+    costs = offer.lot if of_lot else offer.per_unit
+    total = costs.total_owning_cost
+    named = ((name, getattr(costs, name)) for name in _PARTS)
     parts = tuple(
-        CostPart(name, figures[key].value, figures[key].text)
-        for name, key in ((name, getattr(offer.per_unit, name)) for name in _PARTS)
+        part
+        for name, key in named
         if key
+        for part in _parts(CostPart(name, figures[key].value, figures[key].text), offer.items_price if of_lot else None)
     )
     return StackedCost(offer.rank_text, str(_visible(offer.bidder)), figures[total].text if total else "", parts)
+
+
+def _parts(part: CostPart, items: Decimal | None) -> Iterator[CostPart]:
+    """A part of a cost; the price of a lot as that of its units and that of its further items."""
+    if items is None or part.name != "evaluated_price":
+        yield part
+        return
+    units = part.amount - items
+    yield CostPart(part.name, units, amount(units))
+    yield CostPart("items_price", items, amount(items))
 
 
 def _information(sheets: Iterable[_OfferSheet]) -> _Information | None:

@@ -72,6 +72,8 @@ def evaluation_text(view: EvaluationView, width: int, *, color: bool = False) ->
     console.print(_text(f"{view.reference} · {view.title}", "bold"))
     if view.remark:
         console.print(_text(view.remark, "italic"))
+    for line in _against_published(view):
+        console.print(_text(line, "bold"))
     for lot in view.lots:
         console.print()
         console.print(_text(f"Lot {lot.id} · {lot.description} · {lot.quantity:,} units", "bold"))
@@ -87,6 +89,16 @@ def evaluation_text(view: EvaluationView, width: int, *, color: bool = False) ->
     return _captured(console)
 
 
+def _against_published(view: EvaluationView) -> Iterator[str]:
+    """That the rules are not the published ones, key by key; nothing where they are, or no file was kept."""
+    proof = view.rules_proof
+    if proof is None or proof.holds or not proof.fingerprint:
+        return
+    yield f"NOT BY THE RULES AS PUBLISHED: {proof.sentence}"
+    for each in proof.differences:
+        yield f"  {each.key}: published {each.published or 'not stated'}; used {each.used or 'not stated'}"
+
+
 def _notes(view: EvaluationView, lot: LotView) -> Iterator[str]:
     """What stands beside the ranking: corrections, decisions, contract prices, the ranking without preference."""
     for offer in lot.offers:
@@ -98,13 +110,20 @@ def _notes(view: EvaluationView, lot: LotView) -> Iterator[str]:
         for decision in offer.decisions:
             yield f"decision: {offer.bidder} — {decision}"
     if any(offer.has_price_steps for offer in lot.offers):
-        prices = ((offer.bidder, view.figures[offer.contract_price]) for offer in lot.offers if offer.contract_price)
-        yield "contract price of the lot: " + "; ".join(f"{who} {price.text} {price.unit}" for who, price in prices)
+        yield "contract price of the lot: " + "; ".join(_contract_prices(view, lot))
     moved = [offer for offer in lot.offers if offer.rank_without_preference not in (None, offer.rank)]
     if moved:
         yield "without preference: " + "; ".join(
             f"{offer.bidder} rank {offer.rank_without_preference}" for offer in moved
         )
+
+
+def _contract_prices(view: EvaluationView, lot: LotView) -> Iterator[str]:
+    for offer in lot.offers:
+        if offer.contract_price:
+            price = view.figures[offer.contract_price]
+            tax = f" ({offer.tax_note})" if offer.tax_note else ""
+            yield f"{offer.bidder} {price.text} {price.unit}{tax}"
 
 
 def rates_text(report: RatesReport, width: int, *, years: bool = False, color: bool = False) -> str:
@@ -181,6 +200,9 @@ def _ranking(view: EvaluationView, lot: LotView) -> Table:
     table.add_column("bidder", overflow="fold", min_width=12)
     for heading, _ in columns:
         table.add_column(heading, justify="right", no_wrap=True)
+    has_items = any(offer.has_items for offer in lot.offers)
+    if has_items:
+        table.add_column("items\nof the lot", justify="right", no_wrap=True)
     table.add_column("lot total", justify="right", no_wrap=True)
     table.add_column("above\nwinner", justify="right", no_wrap=True)
     ranked = [offer for offer in lot.offers if offer.rank is not None]
@@ -189,6 +211,7 @@ def _ranking(view: EvaluationView, lot: LotView) -> Table:
         cells = [_amount(view, getattr(offer.per_unit, name)) for _, name in columns]
         above = offer.above_winner or Decimal(0)
         share = percent(100 * above / lowest) if lowest else ""
+        cells += ["–" if offer.items_price is None else amount(offer.items_price)] if has_items else []
         table.add_row(
             _text(offer.rank_text),
             _text(offer.bidder),
@@ -278,7 +301,12 @@ def _behind(report: RatesReport, rates: RatesView) -> Iterable[ShownFigure]:
         if identity not in wanted:
             wanted.add(identity)
             roots.extend(report.figures[identity].operands)
-    return [figure for identity, figure in report.figures.items() if identity in wanted]
+    return [f for identity, f in report.figures.items() if identity in wanted and not _is_plain_number(f)]
+
+
+def _is_plain_number(figure: ShownFigure) -> bool:
+    """A constant without unit, such as the one of 1 + rate, which the lines that use it show already."""
+    return figure.operator == "constant" and figure.unit == "1"
 
 
 def _arithmetic(figures: Iterable[ShownFigure]) -> Table:

@@ -2,9 +2,12 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator, Sequence
+
 from ..evaluation.announced import rule_sentence
 from ..evaluation.result import LotEvaluation, LotRates
 from ..findings import one_line
+from ..records.commercial import RegulationLimit
 from ..records.quantity import Entry
 from ..records.rules import RULE_KINDS
 from ..records.tender import CoolingValuation, Derivation, Lot, Tender
@@ -75,7 +78,7 @@ def rules(tender: Tender) -> tuple[str, ...]:
 
 
 def limits(stated: Lot) -> tuple[str, ...]:
-    """The limits of a lot, in words.
+    """Every limit of a lot that an offer must keep, in words; rules sheet, form and evaluation say the same.
 
     Parameters
     ----------
@@ -108,7 +111,26 @@ def limits(stated: Lot) -> tuple[str, ...]:
         )
     if stated.latest_delivery_weeks:
         phrases.append(f"delivery within {as_stated(stated.latest_delivery_weeks.value)} weeks")
-    return tuple(phrases)
+    return (*phrases, *_limits_of_kind(stated))
+
+
+def _limits_of_kind(stated: Lot) -> Iterator[str]:
+    """Limits of sound, liquid and regulation."""
+    if stated.maximum_sound_level_db is not None:
+        yield f"sound level at most {as_stated(stated.maximum_sound_level_db.value)} dB(A)"
+    if stated.accepted_liquids:
+        yield f"insulating liquid {' or '.join(map(one_line, stated.accepted_liquids))}"
+    if stated.pcb_free_required:
+        yield "liquid declared free of PCB"
+    if stated.regulation is not None:
+        yield f"the limits of {_regulation(stated.regulation)}, with no tolerance on the guarantee"
+
+
+def _regulation(stated: RegulationLimit) -> str:
+    parts = [f"{stated.regulation}, {one_line(stated.equipment.value)}"]
+    parts += [f"tier {stated.tier}"] if stated.tier is not None else []
+    parts += [f"placed on the market {stated.date.isoformat()}"] if stated.date is not None else []
+    return ", ".join(parts)
 
 
 def rate_sources(tender: Tender, lot: Lot) -> tuple[str, ...]:
@@ -216,7 +238,7 @@ def _as_stated(source: Entry | None) -> tuple[str, ...]:
     return () if source is None else (f"Source as stated there: {one_line(source.value)}",)
 
 
-def lot_recommendation(lot: LotEvaluation, currency: str) -> str:
+def lot_recommendation(lot: LotEvaluation, currency: str, tie_order: Sequence[str] = ()) -> str:
     """The result of one lot in one sentence.
 
     Parameters
@@ -225,6 +247,8 @@ def lot_recommendation(lot: LotEvaluation, currency: str) -> str:
         One lot.
     currency : str
         Evaluation currency.
+    tie_order : sequence of str
+        Criteria for ties as announced.
 
     Returns
     -------
@@ -240,7 +264,7 @@ def lot_recommendation(lot: LotEvaluation, currency: str) -> str:
     cost = f"{currency} {amount(total.value)}"
     if len(winners) > 1:
         names = " and ".join(one_line(offer.name) for offer in winners)
-        return f"{names} tie at the lowest total owning cost, {cost} for the lot; the announced tie order decides."
+        return f"{names} tie at the lowest total owning cost, {cost} for the lot; {_left_tied(tie_order)}."
     winner = winners[0]
     sentence = f"{one_line(winner.name)} has the lowest total owning cost, {cost} for the lot"
     if winner.tie_decided_by is not None:
@@ -251,6 +275,15 @@ def lot_recommendation(lot: LotEvaluation, currency: str) -> str:
         f"{sentence}, {currency} {amount(winner.margin.amount.value)} ({percent(winner.margin.percent_of_winner)}) "
         f"less than {one_line(winner.margin.to)}."
     )
+
+
+def _left_tied(tie_order: Sequence[str]) -> str:
+    """What is left to do about a tie that stays: a drawing counts only where the tender announces one."""
+    if "drawing of lots" in tie_order:
+        return "no announced criterion parts them; draw lots and record a decision “break tie” for each"
+    if tie_order:
+        return "no announced criterion parts them, and the tender announces no drawing of lots"
+    return "the tender announces no order for ties (tie_order)"
 
 
 def recommendation(lots: tuple[LotEvaluation, ...]) -> str:

@@ -25,7 +25,7 @@ CONTRACT = "Contract prices"
 CORRECTIONS = "Corrections"
 DECISIONS = "Decisions"
 
-_TOTAL_WITHOUT, _RANK_WITHOUT, _TIE = 6, 7, 8
+_TOTAL_WITHOUT, _RANK_WITHOUT, _TIE = 7, 8, 9
 _CONTRACT_NOTE = (
     "The contract price is what would be paid for the lot: corrected, less unconditional discounts, with the items "
     "that count as the bidder prices them. Adders, a preference margin and prices of others are in the evaluated price "
@@ -68,6 +68,7 @@ def write_contract(book: Book, cells: dict[str, LotCells]) -> None:
         Column("Bidder", bidder_width(view) + 6),
         Column("Contract price\nof the lot", money + 2, numeric=True),
         Column("Currency", 10),
+        Column("Tax", 14),
         Column(f"Evaluated price\nof the lot\n[{view.currency}]", money + 2, numeric=True),
         Column(f"Total\nowning cost\n[{view.currency}]", money + 2, numeric=True),
         Column("Rank,\nor status", 16, numeric=True),
@@ -92,13 +93,14 @@ def _contract_rows(book: Book, sheet: Sheet, lot: LotView, cells: LotCells) -> N
         sheet.figure(row, 1, offer.contract_price, "total")
         unit = "" if offer.contract_price is None else book.figure(offer.contract_price).unit
         sheet.text(row, 2, unit, "quiet text")
-        sheet.figure(row, 3, offer.lot.evaluated_price)
-        sheet.figure(row, 4, offer.lot.total_owning_cost)
+        sheet.text(row, 3, offer.tax_note if unit else "", "quiet text")
+        sheet.figure(row, 4, offer.lot.evaluated_price)
+        sheet.figure(row, 5, offer.lot.total_owning_cost)
         if offer.status == "ranked":
             rank = f"{cells.rank.partition(':')[0].rpartition('$')[0]}${cells.lot_row + position + 1}"
-            sheet.formula(row, 5, f"={rank}", float(offer.rank or 0), "total")
+            sheet.formula(row, 6, f"={rank}", float(offer.rank or 0), "total")
         else:
-            sheet.text(row, 5, offer.status, "quiet number")
+            sheet.text(row, 6, offer.status, "quiet number")
         sheet.figure(row, _TOTAL_WITHOUT, offer.total_without_preference)
         _rank_without(sheet, offer, (first, len(ranked)), cells.decimals, places.get(offer.bidder))
         sheet.row += 1
@@ -206,6 +208,7 @@ def write_decisions(book: Book) -> None:
         Column("On", 12),
         Column("Evidence", 20),
         Column("Where", 18),
+        Column("Used?", 34),
     )
     note = "As recorded in the file of decisions, in its order; each stands beside the figures that it moves."
     sheet = Sheet(book, DECISIONS, "Decisions by people", columns, note)
@@ -218,4 +221,16 @@ def write_decisions(book: Book) -> None:
 
 def _decisions(view: EvaluationView) -> Iterator[tuple[str, ...]]:
     for d in view.decisions:
-        yield (capital(d.kind), d.lot, d.bidder, d.field, d.value, d.reason, d.who, d.when, d.evidence, d.place)
+        yield (
+            capital(d.kind),
+            d.lot,
+            d.bidder,
+            d.field,
+            d.value,
+            d.reason,
+            d.who,
+            d.when,
+            d.evidence,
+            d.place,
+            d.outcome,
+        )

@@ -105,9 +105,10 @@ def plan_prices(book: Book) -> PricePlan:
                 settle(step.change, _CHANGE)
                 settle(step.price, _PRICE)
                 rows.append(("step", step))
+            without = _only_without_preference(book, offer)
             for identity in _others(book, offer, elsewhere):
                 settle(identity, _PRICE)
-                rows.append(("figure", identity))
+                rows.append(("without preference" if identity in without else "figure", identity))
     return PricePlan(sheet, tuple(rows))
 
 
@@ -135,6 +136,16 @@ def _others(book: Book, offer: OfferView, elsewhere: set[str]) -> tuple[str, ...
     return tuple(identity for identity in dict.fromkeys(ids) if _is_new(book, identity, elsewhere))
 
 
+def _only_without_preference(book: Book, offer: OfferView) -> set[str]:
+    """Figures that only the total without preference is made of: their labels are those of the evaluation."""
+    if offer.total_without_preference is None:
+        return set()
+    evaluated = [*_amounts(offer.lot), *_amounts(offer.per_unit), offer.contract_price]
+    evaluated += [identity for step in offer.price_steps for identity in (step.price, step.change)]
+    known = {figure.id for root in filter(None, evaluated) for figure in behind(root, book.view.figures)}
+    return {figure.id for figure in behind(offer.total_without_preference, book.view.figures)} - known
+
+
 def _is_new(book: Book, identity: str, elsewhere: set[str]) -> bool:
     return identity not in book.addresses and identity not in elsewhere
 
@@ -153,8 +164,8 @@ def write_prices(book: Book, plan: PricePlan) -> None:
     for kind, content in plan.rows:
         if isinstance(content, PriceStepView):
             _step(sheet, content)
-        elif kind == "figure":
-            _figure(book, sheet, content)
+        elif kind in ("figure", "without preference"):
+            _figure(book, sheet, content, "" if kind == "figure" else f", {kind}")
         else:
             if kind == "band":
                 sheet.new_page()
@@ -184,9 +195,9 @@ def _value(sheet: Sheet, column: int, identity: str | None, style: str) -> None:
     sheet.text(sheet.row, column + 1, "" if unit == "1" else unit, "quiet text")
 
 
-def _figure(book: Book, sheet: Sheet, identity: str) -> None:
+def _figure(book: Book, sheet: Sheet, identity: str, of: str) -> None:
     figure = book.figure(identity)
-    sheet.text(sheet.row, 0, f"   {capital(figure.label)}", "quiet text")
+    sheet.text(sheet.row, 0, f"   {capital(figure.label)}{of}", "quiet text")
     for column in (1, 2, 3):
         sheet.text(sheet.row, column, "", "quiet text")
     _value(sheet, _PRICE, identity, "quiet number" if figure.operands or figure.operator != "read" else "input")

@@ -176,6 +176,11 @@ class OfferView:
         Criterion of the announced order that broke a tie of this offer; empty where none did.
     decisions : tuple of str
         Recorded decisions that took effect on the offer, each in a sentence with who, when, why and where.
+    tax_note : str
+        Whether the bidder's prices, and so the contract price, include tax: ``"tax included"``, ``"without tax"``,
+        ``"tax not stated"``.
+    items_price : Decimal or None
+        What further items add to the evaluated price of the lot, a preference on them included; None where none count.
     """
 
     bidder: str
@@ -203,8 +208,15 @@ class OfferView:
     rank_without_preference: int | None = None
     tie_decided_by: str = ""
     decisions: tuple[str, ...] = ()
+    tax_note: str = ""
+    items_price: Decimal | None = None
 
     @property
     def has_price_steps(self) -> bool:
         """Whether more than a currency lies between the quoted and the evaluated price."""
         return any(step.name not in ("quoted", "currency", "evaluated") for step in self.price_steps)
+
+    @property
+    def has_items(self) -> bool:
+        """Whether further items are part of the lot's amounts, so that they are more than quantity times unit."""
+        return any(step.scope == "lot" for step in self.price_steps)

@@ -60,7 +60,7 @@ class FindingView:
 
 @dataclass(frozen=True, slots=True)
 class DecisionView:
-    """One decision by a person, as it stands in the file of decisions."""
+    """One decision by a person, as it stands in the file of decisions; `outcome` says whether it was used."""
 
     kind: str
     bidder: str
@@ -72,6 +72,7 @@ class DecisionView:
     when: str
     evidence: str
     place: str
+    outcome: str = ""
 
 
 @dataclass(frozen=True, slots=True)
