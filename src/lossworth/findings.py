@@ -464,6 +464,13 @@ KINDS: dict[str, FindingKind] = {
             "Put the bidders' files into the folder `bids`, or name them on the command line.",
         ),
         FindingKind(
+            "cells-merged",
+            "Merged cells in a table of offers",
+            _STOPS,
+            "Cells of several offers or columns are one; the file holds the value in the first of them only.",
+            "Ask the bidder to part the cells and to fill in each; a value is never spread over others.",
+        ),
+        FindingKind(
             "bidder-missing",
             "Bidder not named",
             _STOPS,
@@ -692,6 +699,27 @@ KINDS: dict[str, FindingKind] = {
             "Have the bidder confirm the converted value; until then it is an assumption.",
         ),
         FindingKind(
+            "offers-hidden",
+            "Offers on a hidden sheet, row or column",
+            _NOTE,
+            "A bidder's workbook hides what it states; it counts all the same, and nobody saw it on opening the file.",
+            "Open the file, show what is hidden, and ask the bidder whether it is part of the bid.",
+        ),
+        FindingKind(
+            "workbook-links",
+            "Workbook leads to other files",
+            _NOTE,
+            "The workbook takes values from other files or data; they count as they were when it was saved.",
+            "Compare its figures with the printed bid; links are never followed.",
+        ),
+        FindingKind(
+            "alternative-without-base",
+            "Alternative without base offer",
+            _NOTE,
+            "A bidder offers an alternative for a lot without a base offer, or under another spelling of its name.",
+            "Check the bid; whether the alternative counts is for the announced rule to say.",
+        ),
+        FindingKind(
             "value-not-read",
             "Value not read",
             _NOTE,
@@ -753,6 +781,20 @@ KINDS: dict[str, FindingKind] = {
             _NOTE,
             "The bidder leaves an item without a price, and the announced rule takes one from the other offers.",
             "Nothing to do; the amount serves the comparison only and is no part of the contract price.",
+        ),
+        FindingKind(
+            "discount-unusual",
+            "Discount apparently not meant as it stands",
+            _NOTE,
+            "A discount is above 30 percent, or above zero and below 1 percent.",
+            "Ask the bidder to verify it; it is used as it stands.",
+        ),
+        FindingKind(
+            "cooling-differs",
+            "Cooling other than asked",
+            _NOTE,
+            "The tender asks for a unit with fans or pumps, and the bidder offers one that is naturally cooled.",
+            "Ask the bidder to confirm the cooling and the auxiliary loss; a blank one is zero by rule.",
         ),
         FindingKind(
             "discount-not-counted",

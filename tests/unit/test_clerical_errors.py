@@ -11,6 +11,7 @@ import pytest
 from lossworth.evaluation.clerical_errors import CHECKS, find_clerical_errors
 from lossworth.evaluation.clerical_errors_suspicion import ASK, Suspicion
 from lossworth.findings import KINDS, Effect
+from support import commercial as make
 from support import records
 from support.schedules import (
     POWER_RIVALS,
@@ -382,3 +383,13 @@ def test_check_rating__a_stated_rating_is_not_asked_again() -> None:
     }
     assert "apparent-error-rating" in kinds["silent"]
     assert "apparent-error-rating" not in kinds["stated"]
+
+
+def test_check_price__as_corrected_by_the_rule():
+    """A price that is ordinary as read and far too low as corrected is asked about."""
+    settings = {"arithmetic_errors": "correct", "unit_price_against_total": "total governs"}
+    tender = make.tender(plain_lot(), settings={**settings, "misplaced_decimal": "no exception"})
+    asked = [s for s in suspected(schedule(total_price="120000"), *rivals(), tender=tender) if s.offer == "Alder"]
+    assert kinds(tuple(asked)) == ["apparent-error-price"]
+    assert "as corrected by the announced rule, " in asked[0].finding.rule
+    assert not [s for s in suspected(schedule(total_price="210000"), *rivals(), tender=tender) if s.offer == "Alder"]

@@ -106,3 +106,36 @@ def test_check_silence__delivery_term_of_some():
     """Where some state a delivery term, silence is worth a note."""
     found = make.only(make.tender(), make.bid(), make.bid("Birch", "4100", delivery_term=make.entry("DDP")))
     assert [(f.kind, f.field) for f in found.findings] == [("commercial-term-not-stated", "delivery term")]
+
+
+@pytest.mark.parametrize("field", ["unconditional_discount_percent", "prompt_payment_discount_percent"])
+@pytest.mark.parametrize(
+    ("percent", "status", "kinds"),
+    [
+        ("100", "not evaluated", ["value-out-of-bounds"]),
+        ("99", "ranked", ["discount-unusual"]),
+        ("30.1", "ranked", ["discount-unusual"]),
+        ("30", "ranked", []),
+        ("1", "ranked", []),
+        ("0.99", "ranked", ["discount-unusual"]),
+        ("0.05", "ranked", ["discount-unusual"]),
+        ("0", "ranked", []),
+    ],
+)
+def test_check_discounts__what_cannot_be_and_what_is_asked(field, percent, status, kinds):
+    """Nothing is left of a price less 100 percent; a very small or very large discount is a question."""
+    settings = {"unconditional_discounts": "deduct", "prompt_payment_discounts": "deduct"}
+    found = make.only(make.tender(settings=settings), make.bid(**{field: make.quantity(percent)}))
+    assert (found.status, make.kinds(found)) == (status, kinds)
+
+
+@pytest.mark.parametrize(
+    ("asked", "offered", "kinds"),
+    [("ONAN/ONAF", "ONAN", ["cooling-differs"]), ("ONAN/ONAF", "ONAN/ONAF", []), ("ONAN", "ONAN/ONAF", [])],
+)
+def test_check_completeness__cooling_other_than_asked(asked, offered, kinds):
+    """A unit without fans where the tender asks for some is a question to the bidder."""
+    lot = records.lot(cooling=make.entry(asked))
+    found = make.only(make.tender(lot), make.bid(cooling=make.entry(offered)))
+    assert (found.status, make.kinds(found)) == ("ranked", kinds)
+    assert all(f.fix.startswith("Ask the bidder: the tender asks for cooling ONAN/ONAF.") for f in found.findings)

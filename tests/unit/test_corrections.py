@@ -6,7 +6,9 @@ from decimal import Decimal as D
 
 import pytest
 
-from lossworth.evaluation.corrections import schedule_error
+from lossworth.evaluation.announced import rule_sentence
+from lossworth.evaluation.schedule_error import PriceCheck, schedule_error
+from lossworth.money import Rounding, RoundingMode
 from lossworth.records.tender import RoundingPoint
 from lossworth.trail import walk
 from support import commercial as make
@@ -15,12 +17,15 @@ from support import records
 CORRECT = {"arithmetic_errors": "correct", "misplaced_decimal": "no exception"}
 UNIT = {**CORRECT, "unit_price_against_total": "unit price governs"}
 TOTAL = {**CORRECT, "unit_price_against_total": "total governs"}
+MARK = {**UNIT, "misplaced_decimal": "total governs"}
+ESTIMATED = records.lot(estimated_unit_price=make.quantity("4100", "NCU"))
+DISCOUNT = {"unconditional_discount_percent": make.quantity("5")}
 
 
-def error(price: str, total: str, lot=None, **terms):
+def error(price: str, total: str, lot=None, check=None, **terms):
     """Error of a schedule of ten units."""
     offer = make.bid("Alder", price, total_price=make.quantity(total, "NCU"), **terms)
-    return schedule_error(offer, lot or records.lot(), D("0.01"))
+    return schedule_error(offer, lot or records.lot(), check)
 
 
 @pytest.mark.parametrize(
@@ -46,10 +51,35 @@ def test_schedule_error__differs(price, total):
 
 @pytest.mark.parametrize(("price", "places"), [("400", 1), ("40", 2), ("40000", -1), ("4000000", -3)])
 def test_schedule_error__misplaced_decimal_mark(price, places):
-    """A power of ten between the two is a misplaced decimal mark, and the message says to which side."""
-    found = error(price, "40000")
-    assert found.shifted_places == places
-    assert f"{abs(places)} places too far {'left' if places > 0 else 'right'}" in found.description
+    """A power of ten that brings the unit price to a usual one is its mark; the message says to which side."""
+    found = error(price, "40000", check=PriceCheck((D(price) / 4100,)))
+    assert (found.shifted_places, found.misplaced) == (places, "unit price")
+    assert f"too far {'left' if places > 0 else 'right'}" in found.description
+
+
+@pytest.mark.parametrize(
+    ("check", "misplaced"),
+    [
+        (PriceCheck((D(1),)), "total"),
+        (PriceCheck((D("0.1"),)), "unit price"),
+        (PriceCheck((D("0.1"), D(1))), None),
+        (PriceCheck(()), None),
+        (PriceCheck((D(5),)), None),
+        (PriceCheck((D("0.1"),), is_confirmed=True), "total"),
+    ],
+)
+def test_schedule_error__which_of_the_two_is_misplaced(check, misplaced):
+    """Usual prices tell which of the two is wrong; a confirmed unit price is not."""
+    found = error("400", "40000", check=check)
+    assert (found.shifted_places, found.misplaced) == (1, misplaced)
+    assert ("cannot be told" in found.description) is (misplaced is None)
+
+
+def test_schedule_error__bound_from_the_digits_of_the_total():
+    """An evaluation in hundreds does not make a total of 179,249 agree with 179,200."""
+    rules = make.rules(**UNIT).model_copy(update={"rounding": Rounding(D(100), RoundingMode.HALF_AWAY_FROM_ZERO)})
+    offer = make.bid(price="17920", total_price=make.quantity("179249", "NCU"))
+    assert make.kinds(make.only(records.tender(rules=rules), offer)) == ["arithmetic-error-corrected"]
 
 
 def test_schedule_error__total_of_the_lot_with_items_or_discount():
@@ -97,13 +127,12 @@ def test_correct_schedule__total_governs():
 
 @pytest.mark.parametrize("point", RoundingPoint)
 def test_correct_schedule__total_that_the_quantity_does_not_divide(point):
-    """A total of 100,000 for seven units is paid in full, whatever the rounding of the evaluation makes of it."""
+    """A total of 100,000 for seven units is paid and compared in full, whatever the rounding of the evaluation."""
     lot = records.lot(quantity=make.quantity("7"))
     settings = {**TOTAL, "point": point}
     found = corrected(settings, price="14000", total="100000.00", lot=lot)
     assert found.contract_price.value == D("100000.00")
-    expected = {RoundingPoint.PART_PER_UNIT: D("99999.97"), RoundingPoint.PART_PER_LOT: D("100000.00")}
-    assert found.lot.evaluated_price.value == expected[point]
+    assert found.lot.evaluated_price.value == D("100000.00")
 
 
 def test_correct_schedule__total_less_items():
@@ -127,6 +156,13 @@ def test_correct_schedule__as_read():
     found = corrected({"arithmetic_errors": "take as read"})
     assert (found.corrections, found.status) == ((), "ranked")
     assert make.kinds(found) == ["arithmetic-error-not-corrected"]
+
+
+def test_rule_sentence__take_as_read():
+    """The rule says what the evaluation does: the unit price as read, not the total."""
+    tender = make.tender(settings={"arithmetic_errors": "take as read"})
+    sentence = "The unit price as read is evaluated; arithmetic errors are not corrected"
+    assert rule_sentence(tender, "arithmetic_errors").startswith(sentence)
 
 
 def test_correct_schedule__rejected():
@@ -154,6 +190,93 @@ def test_correct_schedule__refused():
 
 def test_correct_schedule__mark_governs_before_the_unit_price():
     """With the exception for a misplaced mark the total governs, also where else the unit price does."""
-    found = corrected({**UNIT, "misplaced_decimal": "total governs"}, price="400", total="40000")
+    found = corrected(MARK, price="400", total="40000", lot=ESTIMATED)
     assert found.corrections[0].corrected.value == 4000
     assert "decimal mark" in found.corrections[0].rule
+
+
+def test_correct_schedule__shifted_unit_price_and_a_total_net_of_discount():
+    """A total that stands after the discount moves the mark, and the discount comes off once."""
+    settings = {**MARK, "unconditional_discounts": "deduct"}
+    found = corrected(settings, price="400", total="38000", lot=ESTIMATED, **DISCOUNT)
+    assert found.corrections[0].corrected.value == 4000
+    assert (found.lot.evaluated_price.value, found.contract_price.value) == (D("38000.00"), D("38000.00"))
+
+
+def test_correct_schedule__undecided_total_net_of_discount_governs():
+    """A governing total that stands after the discount is brought back before it comes off."""
+    found = corrected({**TOTAL, "unconditional_discounts": "deduct"}, price="400", total="38000", **DISCOUNT)
+    assert found.corrections[0].corrected.value == 4000
+    assert (found.lot.evaluated_price.value, found.contract_price.value) == (D("38000.00"), D("38000.00"))
+
+
+@pytest.mark.parametrize(("total", "unit"), [("40000", 4000), ("40200", 4000)])
+@pytest.mark.parametrize("settings", [MARK, TOTAL])
+def test_correct_schedule__items_only_out_of_a_total_that_holds_them(settings, total, unit):
+    """Whether the total holds the items is seen from the reading that explains it."""
+    estimate = make.quantity("4100", "NCU") if settings is MARK else None
+    lot = records.lot(items=(make.item(pieces="2"),), estimated_unit_price=estimate)
+    prices = {"spare bushing": make.quantity("100", "NCU")}
+    found = corrected(settings, price="400", total=total, lot=lot, item_prices=prices)
+    assert (found.corrections[0].field, found.corrections[0].corrected.value) == ("unit_price", unit)
+
+
+@pytest.mark.parametrize("against", ["unit price governs", "total governs"])
+def test_correct_schedule__misplaced_total(against):
+    """Where the mark of the total is the wrong one the unit price governs, with that reason."""
+    settings = {**MARK, "unit_price_against_total": against}
+    found = corrected(settings, price="4000", total="4000", lot=ESTIMATED)
+    (correction,) = found.corrections
+    assert (correction.field, correction.corrected.value) == ("total_price", 40000)
+    assert "the decimal mark of the total stands 1 place too far left" in correction.reason
+    assert found.per_unit.evaluated_price.value == D("4000.00")
+
+
+def test_correct_schedule__misplaced_total_without_exception():
+    """A tender that announces no exception for a misplaced mark treats it as any other error."""
+    found = corrected(TOTAL, price="4000", total="4000", lot=ESTIMATED)
+    assert found.corrections[0].corrected.value == 400
+
+
+def test_correct_schedule__median_of_the_others_decides():
+    """Other offers tell which figure is misplaced; alone the error is an ordinary one."""
+    others = [make.bid(name, price) for name, price in (("Birch", "4100"), ("Cedar", "4200"))]
+    for total, field in (("4000", "total_price"), ("400000", "total_price")):
+        offer = make.bid(price="4000", total_price=make.quantity(total, "NCU"))
+        assert make.only(make.tender(settings=MARK), offer, *others).corrections[0].field == field
+    offer = make.bid(price="400", total_price=make.quantity("40000", "NCU"))
+    assert make.only(make.tender(settings=MARK), offer, *others).corrections[0].field == "unit_price"
+    assert make.only(make.tender(settings=MARK), offer, others[0]).corrections[0].field == "unit_price"
+    others = [make.bid("Birch", "410"), make.bid("Cedar", "4200")]
+    assert make.only(make.tender(settings=MARK), offer, *others).corrections[0].field == "total_price"
+    assert make.only(make.tender(settings=MARK), offer).corrections[0].field == "total_price"
+
+
+def test_correct_schedule__confirmed_unit_price_ends_the_shift():
+    """A bidder that confirms its unit price as read has said that the total is wrong."""
+    confirmed = make.decide("confirm value", field="unit_price", value=make.quantity("400", "NCU"))
+    found = corrected(MARK, confirmed, price="400", total="40000", lot=ESTIMATED)
+    assert found.per_unit.evaluated_price.value == D("400.00")
+
+
+def test_correct_schedule__no_false_tie():
+    """Three units for 100,000 in all are dearer than three at 33,333.33."""
+    lot = records.lot(quantity=make.quantity("3"))
+    alder = make.bid(price="5000", total_price=make.quantity("100000", "NCU"))
+    lots = make.tender(lot, settings=TOTAL)
+    assert make.first(lots, alder, make.bid("Birch", "33333.33")) == ["Birch"]
+    assert make.only(lots, alder).lot.evaluated_price.value == D("100000.00")
+
+
+def test_correct_schedule__governing_total_with_items():
+    """Units of a governing total are rounded for the lot, and the items beside them."""
+    lot = records.lot(quantity=make.quantity("3"), items=(make.item(pieces="4"),))
+    prices = {"spare bushing": make.quantity("100", "NCU")}
+    found = corrected(TOTAL, price="5000", total="100400", lot=lot, item_prices=prices)
+    assert (found.lot.evaluated_price.value, found.contract_price.value) == (D("100400.00"), D("100400.00"))
+
+
+def test_contract_price__not_by_the_quantum_of_the_evaluation():
+    """What is paid is exact to the minor unit where the evaluation rounds to hundreds."""
+    rules = make.rules().model_copy(update={"rounding": Rounding(D(100), RoundingMode.HALF_AWAY_FROM_ZERO)})
+    assert make.only(records.tender(rules=rules), make.bid(price="4480.55")).contract_price.value == D("44805.50")

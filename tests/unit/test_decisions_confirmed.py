@@ -174,3 +174,10 @@ def test_settled_by__a_confirmed_value_answers_what_was_missing() -> None:
         "value-confirmed",
         "value-missing",
     ]
+
+
+@pytest.mark.parametrize(("setting", "value"), [(FIXED, "7.4"), (PROVED, "7.3")])
+def test_apply_confirmations__rule_is_a_clause(setting: str, value: str) -> None:
+    """The announced rule stands in the middle of a message, without a full stop."""
+    (finding,) = applied(setting, confirm("load_loss_kw", value, "kW")).findings
+    assert not finding.rule.endswith(".")

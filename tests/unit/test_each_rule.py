@@ -80,6 +80,7 @@ CASES: dict[str, Case] = {
     "misplaced_decimal": case(
         make.bid("Alder", "400", total_price=total("40000")),
         make.bid("Birch", "3900"),
+        lot=records.lot(estimated_unit_price=make.quantity("4100", "NCU")),
         outcomes={"total governs": BIRCH, "no exception": ALDER},
         beside={"arithmetic_errors": "correct", "unit_price_against_total": "unit price governs"},
     ),

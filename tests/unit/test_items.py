@@ -7,6 +7,7 @@ from decimal import Decimal as D
 import pytest
 
 from lossworth.evaluation.evaluate import evaluate
+from lossworth.findings import Finding, Place
 from lossworth.records.tender import RoundingPoint
 from lossworth.trail import walk
 from support import commercial as make
@@ -149,3 +150,43 @@ def test_items_price__interest_and_margin():
     stood_in = make.only(tender, make.bid(payments=early), *OTHERS)
     assert stood_in.lot.evaluated_price.value == 7 * D("4800.00") + D("520.04") + D("52.00")
     assert own.total_without_preference.value == 7 * (D("4400.00") + 2112) + 440
+
+
+@pytest.mark.parametrize(
+    ("settings", "whose"),
+    [
+        (HIGHEST, "520.04 NCU for the lot, highest of the others (Cedar, tender.toml:1)"),
+        (AVERAGE, "460.02 NCU for the lot, average of the others (Birch, tender.toml:1, Cedar, tender.toml:1)"),
+    ],
+)
+def test_stand_in__finding_names_amount_and_cells(settings, whose):
+    """The note says how much stands in, and out of whose cell."""
+    assert whose in missing(settings, *OTHERS).findings[-1].rule
+
+
+@pytest.mark.parametrize(
+    ("rule", "amount"),
+    [
+        ("not accepted", "520.04"),
+        ("only of the lowest ranked base bidder", "520.04"),
+        ("only if the base offer is responsive", "520.04"),
+        ("as offers of their own", "3996.00"),
+    ],
+)
+def test_stand_in__excluded_alternative_supplies_none(rule, amount):
+    """The price of an alternative that the rule leaves out stands in for nobody."""
+    lot = LOT.model_copy(update={"maximum_no_load_loss_kw": make.quantity("0.2", "kW")})
+    lossy = make.bid("Dogwood", "4300", item_prices=prices("1"), no_load_loss_kw=make.quantity("0.3", "kW"))
+    other = make.bid("Dogwood", "4300", alternative="ester", item_prices=prices("999"))
+    found = missing({**HIGHEST, "alternatives": rule}, *OTHERS, lossy, other, lot=lot)
+    assert found.lot.evaluated_price.value == 28000 + D(amount)
+
+
+def test_items_price__unreadable_is_not_missing():
+    """A price that cannot be read is reported once, and not as left out."""
+    at = Place("bids/alder.csv", line=2, column="item: spare bushing")
+    offer = make.bid(columns={"item: spare bushing": at})
+    unread = Finding("value-unreadable", "item: spare bushing", "must be a number", at, "?", "Alder", "1")
+    result = evaluate(make.tender(LOT, settings=HIGHEST), [offer, *OTHERS], [unread])
+    (found,) = (each for each in result.lots[0].offers if each.name == "Alder")
+    assert (found.status, make.kinds(found)) == ("not evaluated", ["value-unreadable"])

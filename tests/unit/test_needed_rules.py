@@ -74,7 +74,14 @@ def test_needed_rules__all_at_once():
 def test_needed_rules__arithmetic_only_as_far_as_the_error_goes(settings, keys):
     """A misplaced mark asks for its exception first, and for the governing figure where there is none."""
     offer = make.bid(price="400", total_price=make.quantity("40000", "NCU"))
-    assert unset(make.tender(settings=settings), offer) == keys
+    lot = records.lot(estimated_unit_price=make.quantity("4100", "NCU"))
+    assert unset(make.tender(lot, settings=settings), offer) == keys
+
+
+def test_needed_rules__undecided_power_of_ten_is_an_ordinary_error():
+    """Where nothing tells which figure is misplaced the exception for a misplaced mark is not asked for."""
+    offer = make.bid(price="400", total_price=make.quantity("40000", "NCU"))
+    assert unset(make.tender(settings={"arithmetic_errors": "correct"}), offer) == ["rules.unit_price_against_total"]
 
 
 @pytest.mark.parametrize(

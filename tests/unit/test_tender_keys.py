@@ -6,9 +6,11 @@ from enum import StrEnum
 from typing import Any, Literal, get_args, get_origin
 
 from lossworth.intake.tender_keys import INSIDE, TABLES
+from lossworth.records import commercial
 from lossworth.records import tender as records
 from lossworth.records.profile import PriceBlock
 from lossworth.records.quantity import Record
+from lossworth.records.rules import RULE_KINDS, AnnouncedRules
 
 OF_TABLE: dict[str, type[Record]] = {
     "tender": records.Identity,
@@ -23,7 +25,17 @@ OF_TABLE: dict[str, type[Record]] = {
     "lot.derivation": records.Derivation,
     "lot.study": records.Derivation,
     "lot.loss_basis": records.LossBasis,
+    "delivery.level": commercial.DeliveryLevel,
+    "taxes": commercial.Taxes,
+    "payment": commercial.PaymentTerms,
+    "payment.part": commercial.Payment,
+    "preference": commercial.Preference,
+    "lot.regulation": commercial.RegulationLimit,
+    "lot.item": commercial.Item,
+    "lot.site_cost": commercial.SiteCost,
 }
+#: Keys of the rounding, which are no announced rules.
+ROUNDING = {"round_money_to", "rounding", "rounding_applies_to"}
 
 
 def test_tables__fill_the_records() -> None:
@@ -36,7 +48,7 @@ def test_tables__fill_the_records() -> None:
         assert required - {"place", "rates"} <= filled, table
 
 
-def words_of(annotation: Any) -> tuple[str, ...]:
+def words_of(annotation: Any) -> tuple[Any, ...]:
     """Texts that a field of a record takes: of a literal or an enumeration, also where it may be absent or a list."""
     if isinstance(annotation, type) and issubclass(annotation, StrEnum):
         return tuple(annotation)
@@ -49,7 +61,17 @@ def test_tables__words_are_those_of_the_records() -> None:
     compared = 0
     for table, record in OF_TABLE.items():
         for key in TABLES[table]:
-            if key.words and not key.for_reading:
-                assert key.words == words_of(record.model_fields[key.fills].annotation), key.name
+            words = key.words or key.numbers
+            if words and not key.for_reading:
+                assert words == words_of(record.model_fields[key.fills].annotation), key.name
                 compared += 1
-    assert compared >= 12
+    assert compared >= 16
+
+
+def test_tables__rules_are_those_of_the_records() -> None:
+    """Every rule that the record has can be set by its key, with the settings whose sentences are printed."""
+    keys = {key.name: key for key in TABLES["rules"] if key.name not in ROUNDING}
+    assert set(AnnouncedRules.model_fields) - {"places"} == set(keys)
+    for kind in RULE_KINDS:
+        assert keys[kind.key].words == tuple(kind.sentences)
+        assert keys[kind.key].words == words_of(AnnouncedRules.model_fields[kind.key].annotation), kind.key

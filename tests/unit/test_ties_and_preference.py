@@ -137,3 +137,16 @@ def test_preference__none_announced_gives_no_second_ranking():
     """Without a margin there is one ranking."""
     found = make.only(make.tender(), make.bid(origin=make.entry("abroad")))
     assert (found.rank_without_preference, found.total_without_preference) == (None, None)
+
+
+def test_preference__tie_without_the_margin_by_the_price_without_it():
+    """A tie of the ranking without preference is broken by prices without the margin."""
+    settings = {"preference": "margin added to other prices", "tie_order": ("lower evaluated price",)}
+    tender = make.tender(settings=settings, preference=make.preference("10"))
+    loss = {"home": make.quantity("0.100", "kW"), "away": make.quantity("0.101", "kW")}
+    offers = [
+        make.bid("Alder", "5000", origin=make.entry("home"), no_load_loss_kw=loss["home"]),
+        make.bid("Birch", "4989", origin=make.entry("away"), no_load_loss_kw=loss["away"]),
+    ]
+    found = {offer.name: offer.rank_without_preference for offer in evaluate(tender, offers).lots[0].offers}
+    assert found == {"Alder": 2, "Birch": 1}

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Collection, Sequence
+from collections.abc import Collection, Mapping, Sequence
 
 from ..findings import Finding
 from ..records.bid import Offer
@@ -10,7 +10,7 @@ from ..records.tender import Tender
 from .announced import rule_clause
 from .result import EvaluatedOffer, Status
 
-__all__ = ["left_out", "needs_ranking"]
+__all__ = ["left_out", "may_stand_in", "needs_ranking"]
 
 
 def needs_ranking(tender: Tender) -> bool:
@@ -64,6 +64,30 @@ def left_out(offer: Offer, tender: Tender, bases: Sequence[EvaluatedOffer], firs
         offer.bidder.value,
         offer.lot.value,
     )
+
+
+def may_stand_in(offer: Offer, tender: Tender, status: Mapping[str, Status]) -> bool:
+    """Whether the rule on alternatives lets the item prices of an offer stand in for those of others.
+
+    Parameters
+    ----------
+    offer : Offer
+        Any offer.
+    tender : Tender
+        With its rule.
+    status : mapping of str to Status
+        Status of the offers of the lot by their names, before items that they do not price.
+
+    Returns
+    -------
+    bool
+        True for a base offer. An alternative of which only the ranking tells whether it is let in supplies no price:
+        the ranking hangs on these prices.
+    """
+    setting = tender.rules.announced.alternatives
+    if offer.alternative is None or setting == "as offers of their own":
+        return True
+    return setting == "only if the base offer is responsive" and status.get(offer.bidder.value) is Status.RANKED
 
 
 def _reason(offer: Offer, setting: str | None, bases: Sequence[EvaluatedOffer], first: Collection[str]) -> str | None:

@@ -91,6 +91,22 @@ class Pack:
         near -= own is not None and low <= own <= high
         return Peers(median, count) if 2 * near > count else None
 
+    def only_other(self, bidder: str) -> Decimal | None:
+        """Figure of the one other bidder.
+
+        Parameters
+        ----------
+        bidder : str
+            The one left out.
+
+        Returns
+        -------
+        Decimal or None
+            None where no other states one, or more than one.
+        """
+        others = [value for name, value in self._of.items() if name != bidder] if len(self._of) < 3 else []
+        return others[0] if len(others) == 1 else None
+
 
 class LotSeen:
     """What all offers of a lot are compared with.
@@ -165,6 +181,22 @@ class LotSeen:
             known = price is not None and peers is not None and peers.count >= FEWEST_PRICES
             self._levels[bidder] = ARITHMETIC.divide(price, peers.median) if known and price and peers else None
         return self._levels[bidder]
+
+    def usual_price(self, bidder: str) -> Decimal | None:
+        """Median of the other bidders' unit prices, or the one price of a single other bidder.
+
+        Parameters
+        ----------
+        bidder : str
+            The bidder left out.
+
+        Returns
+        -------
+        Decimal or None
+            None where no other states a price, or several do not agree. [currency]
+        """
+        peers = self.peers("unit_price", bidder)
+        return self._packs["unit_price"].only_other(bidder) if peers is None else peers.median
 
     def peers(self, field: str, bidder: str) -> Peers | None:
         """Median of the other bidders' figures.

@@ -7,8 +7,12 @@ from decimal import Decimal
 
 from ..money import ARITHMETIC
 from ..records.quantity import Quantity
+from ..trail import read
 from .clerical_errors_comparison import FEWEST_PRICES, Peers, Seen
 from .clerical_errors_suspicion import Supposition, Suspicion, half_digit, shown, stated, suppose, suspect
+from .corrections import correct_schedule
+from .identities import figure_id
+from .schedule_error import PriceCheck, price_levels
 
 __all__ = ["check_price"]
 
@@ -27,12 +31,17 @@ _SHIFTS = (Decimal(10), Decimal("0.1"), Decimal(100), Decimal("0.01"), Decimal(1
 def check_price(seen: Seen) -> Iterator[Suspicion]:
     """A unit price that is abnormally low, far above the others, or out of line with the bidder's own lots.
 
-    Prices are compared as quoted, in the evaluation currency and before any adjustment.
+    Prices are compared as quoted, and as the announced rule corrects their arithmetic, in the evaluation currency and
+    before any adjustment.
     """
     price, stated_price = seen.here.price(seen.offer), seen.offer.unit_price
     if price is None or stated_price is None:
         return
     signs = [*_against_others(seen, price), *_against_estimate(seen, price), *_against_own_lots(seen, price)]
+    corrected = _corrected(seen, price, stated_price)
+    if corrected is not None:
+        again = (*_against_others(seen, corrected), *_against_estimate(seen, corrected))
+        signs += [f"as corrected by the announced rule, {sign}" for sign in again]
     if not signs:
         return
     rule = f"lies far from what is usual: {'; '.join(signs)}"
@@ -50,6 +59,17 @@ def check_price(seen: Seen) -> Iterator[Suspicion]:
         question,
         suppositions=() if found is None else (found,),
     )
+
+
+def _corrected(seen: Seen, price: Decimal, quoted: Quantity) -> Decimal | None:
+    """The price after the correction of arithmetic; None where the rules leave it as it is."""
+    offer, lot = seen.offer, seen.here.lot
+    units = read(figure_id(f"lot {lot.id}", "quantity"), "quantity", lot.quantity.value, "units", lot.quantity.place)
+    check = PriceCheck(price_levels(offer, seen.here))
+    figure = correct_schedule(offer, seen.here.tender, lot, units, (), check).unit_price
+    if figure is None or figure.value == quoted.value:
+        return None
+    return ARITHMETIC.divide(ARITHMETIC.multiply(price, figure.value), quoted.value)
 
 
 def _percent(price: Decimal, other: Decimal) -> str:

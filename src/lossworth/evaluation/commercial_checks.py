@@ -4,18 +4,27 @@ from __future__ import annotations
 
 from collections.abc import Callable, Collection, Iterable, Iterator
 from dataclasses import dataclass
+from decimal import Decimal
 
 from ..findings import Finding
 from ..records.bid import Offer
 from ..records.quantity import Quantity
 from ..records.tender import Tender
 from .announced import rule_clause, rule_place
+from .clerical_errors_suspicion import ASK
 from .loss_tolerance import claims_tolerance
 from .payment_terms import payments_differ
+from .shares import percent_text
 
 __all__ = ["CHECKS", "check_terms", "terms_stated"]
 
 
+#: Discounts outside of these bounds are asked about. Common practice, no source. [percent]
+_USUAL_DISCOUNTS = (Decimal(1), Decimal(30))
+_WHOLE = Decimal(100)
+_ASK_DISCOUNT = (
+    f"{ASK}please verify the {{field}} that you state: that it is a percentage with its decimal mark in place."
+)
 _ASKED = {"tax_included": "tax", "delivery_term": "delivery term", "origin": "origin"}
 
 
@@ -91,7 +100,7 @@ def check_tolerance(terms: Terms) -> Iterator[Finding]:
         return
     sentence = rule_clause(terms.tender, "loss_tolerance")
     allowed = rules.loss_tolerance_percent
-    got = f"{claimed.text} %"
+    got = percent_text(claimed)
     if rules.loss_tolerance == "none, the guarantee is a ceiling":
         rule = f"must not be claimed: {sentence}"
         yield Finding("tolerance-not-accepted", "tolerance on losses", rule, claimed.place, got, *_who(terms.offer))
@@ -104,17 +113,25 @@ def check_tolerance(terms: Terms) -> Iterator[Finding]:
 
 
 def check_discounts(terms: Terms) -> Iterator[Finding]:
-    """Discounts that the rules leave out of the comparison."""
+    """Discounts that cannot be, that are worth a question, and that the rules leave out of the comparison."""
     stated, rules = terms.offer.terms, terms.tender.rules.announced
     discounts: tuple[tuple[str, str, Quantity | None], ...] = (
         ("unconditional discount", "unconditional_discounts", stated.unconditional_discount_percent),
         ("prompt payment discount", "prompt_payment_discounts", stated.prompt_payment_discount_percent),
     )
     for field, key, discount in discounts:
-        if discount is not None and discount.value > 0 and getattr(rules, key) == "ignore":
+        if discount is None or discount.value <= 0:
+            continue
+        got, who = percent_text(discount), _who(terms.offer)
+        if discount.value >= _WHOLE:
+            yield Finding("value-out-of-bounds", field, "must be below 100 %", discount.place, got, *who)
+        elif discount.value > _USUAL_DISCOUNTS[1] or discount.value < _USUAL_DISCOUNTS[0]:
+            low, high = _USUAL_DISCOUNTS
+            rule = f"is seldom below {low} or above {high} percent; a share of one may stand for a percentage"
+            yield Finding("discount-unusual", field, rule, discount.place, got, *who, _ASK_DISCOUNT.format(field=field))
+        if getattr(rules, key) == "ignore":
             rule = f"is not counted: {rule_clause(terms.tender, key)}"
-            got = f"{discount.text} %"
-            yield Finding("discount-not-counted", field, rule, discount.place, got, *_who(terms.offer))
+            yield Finding("discount-not-counted", field, rule, discount.place, got, *who)
 
 
 def check_payment_terms(terms: Terms) -> Iterator[Finding]:

@@ -7,6 +7,7 @@ from collections.abc import Collection, Iterable
 from ..findings import Effect, Finding
 from ..records.bid import Offer, is_naturally_cooled
 from ..records.tender import CoolingValuation, Lot, Tender
+from .clerical_errors_suspicion import ASK
 from .loss_basis import OfferOnBasis
 from .result import LotRates
 
@@ -43,7 +44,13 @@ def check_completeness(
     """
     reported = {finding.field for finding in known if finding.effect is not Effect.NOTE}
     offer = judged.offer
-    found = (*_missing(judged), *_currency(offer, tender), *_auxiliary(offer, lot, rates), *_cooling(offer, lot))
+    found = (
+        *_missing(judged),
+        *_currency(offer, tender),
+        *_auxiliary(offer, lot, rates),
+        *_cooling(offer, lot),
+        *_cooling_differs(offer, lot),
+    )
     return tuple(finding for finding in found if finding.field not in reported)
 
 
@@ -104,3 +111,18 @@ def _cooling(offer: Offer, lot: Lot) -> Iterable[Finding]:
             place = offer.columns.get(name, offer.place)
             rule = f"must be stated for a unit cooled {cooling}"
             yield Finding("value-missing", label, rule, place, "", offer.bidder.value, offer.lot.value)
+
+
+def _cooling_differs(offer: Offer, lot: Lot) -> Iterable[Finding]:
+    """A unit without fans or pumps where the tender asks for some: its blank auxiliary loss is zero by rule."""
+    stated, asked = offer.cooling, lot.cooling
+    if stated is None or is_naturally_cooled(asked.value) or not is_naturally_cooled(stated.value):
+        return
+    rule = f"must be {asked.value} as asked ({asked.place}); a blank auxiliary loss is zero by rule"
+    fix = (
+        f"{ASK}the tender asks for cooling {asked.value}. Please confirm the cooling that you offer, at which rating "
+        "the losses are guaranteed, and the auxiliary loss of fans and pumps, if there are any."
+    )
+    yield Finding(
+        "cooling-differs", "cooling", rule, stated.place, stated.value, offer.bidder.value, offer.lot.value, fix
+    )

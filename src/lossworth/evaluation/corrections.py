@@ -5,52 +5,24 @@ from __future__ import annotations
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from decimal import Decimal
+from typing import Literal
 
 from ..findings import Finding
-from ..money import ARITHMETIC
 from ..records.bid import Offer
 from ..records.decision import Decision
-from ..records.quantity import Quantity
 from ..records.tender import Lot, Tender
-from ..trail import Figure, difference, product, quotient, read, total
-from .announced import rule_sentence
+from ..trail import Figure, constant, difference, product, quotient, read, total
+from .announced import rule_clause, rule_sentence
 from .identities import offer_id
-from .items import pieces, quoted_item, stated_item_price
+from .items import pieces, quoted_item
 from .price_line import quoted_price
 from .result import Correction
+from .schedule_error import PriceCheck, ScheduleError, schedule_error
+from .shares import one, share
 
-__all__ = ["Corrected", "ScheduleError", "correct_schedule", "schedule_error"]
+__all__ = ["Corrected", "correct_schedule"]
 
-_MOST_PLACES = 6
-_HALF = Decimal("0.5")
-
-
-@dataclass(frozen=True, slots=True)
-class ScheduleError:
-    """A price schedule whose figures do not add up.
-
-    Parameters
-    ----------
-    stated_total : Quantity
-        Total as stated. [currency of the offer]
-    computed_total : Decimal
-        Unit price times quantity, with the items that the bidder prices. [currency of the offer]
-    shifted_places : int
-        Places by which the decimal mark of the unit price is misplaced; 0 where a shift does not explain the total.
-    """
-
-    stated_total: Quantity
-    computed_total: Decimal
-    shifted_places: int
-
-    @property
-    def description(self) -> str:
-        """What does not add up, in words."""
-        text = f"unit price times quantity is {_plain(self.computed_total)}, the stated total {self.stated_total.text}"
-        if not self.shifted_places:
-            return text
-        side = "left" if self.shifted_places > 0 else "right"
-        return f"{text}; the decimal mark of the unit price stands {abs(self.shifted_places)} places too far {side}"
+_Governs = Literal["unit price", "total", "shifted unit price"]
 
 
 @dataclass(frozen=True, slots=True)
@@ -78,45 +50,13 @@ class Corrected:
     decisions: tuple[Decision, ...] = ()
 
 
-def schedule_error(offer: Offer, lot: Lot, quantum: Decimal) -> ScheduleError | None:
-    """Compare unit price times quantity with the stated total.
-
-    Parameters
-    ----------
-    offer : Offer
-        With unit price, total, and prices of items.
-    lot : Lot
-        With the quantity and the items.
-    quantum : Decimal
-        Smallest amount to which the tender rounds money.
-
-    Returns
-    -------
-    ScheduleError or None
-        None where nothing can be compared, or the figures agree: to half a unit of the last digit of the total, with
-        or without the items that the bidder prices, before or after its unconditional discount.
-
-    Notes
-    -----
-    The decimal mark is misplaced where a unit price times a power of ten gives the total within the same bound.
-    """
-    unit, stated = offer.unit_price, offer.terms.total_price
-    if unit is None or stated is None or (offer.quantity and offer.quantity.value != lot.quantity.value):
-        return None
-    bound = max(_half_of_last_digit(stated), quantum * _HALF)
-    units, items = ARITHMETIC.multiply(unit.value, lot.quantity.value), _items(offer, lot)
-    if any(abs(sum_ - stated.value) <= bound for sum_ in _readings(units, items, offer)):
-        return None
-    shifts = (
-        places
-        for places in _nearest_first()
-        if any(abs(sum_ - stated.value) <= bound for sum_ in _readings(units.scaleb(places), items, offer))
-    )
-    return ScheduleError(stated, units + items, next(shifts, 0))
-
-
 def correct_schedule(
-    offer: Offer, tender: Tender, lot: Lot, quantity: Figure, decisions: Sequence[Decision]
+    offer: Offer,
+    tender: Tender,
+    lot: Lot,
+    quantity: Figure,
+    decisions: Sequence[Decision],
+    check: PriceCheck | None = None,
 ) -> Corrected:
     """Correct the price schedule of an offer by the announced rules.
 
@@ -132,6 +72,8 @@ def correct_schedule(
         Units of the lot.
     decisions : sequence of Decision
         Decisions on this offer, in the order of the file; the last answer to the correction holds.
+    check : PriceCheck, optional
+        What is known of the size of the unit price.
 
     Returns
     -------
@@ -144,7 +86,7 @@ def correct_schedule(
        (from memory); bid-error clauses of several authorities: the unit price shall prevail.
     """
     quoted = quoted_price(offer)
-    error = schedule_error(offer, lot, tender.rules.rounding.quantum)
+    error = schedule_error(offer, lot, check)
     rule = tender.rules.announced.arithmetic_errors
     if quoted is None or error is None or rule is None:
         return Corrected(quoted)
@@ -166,36 +108,70 @@ def _corrected(
     decisions: Sequence[Decision],
 ) -> Corrected:
     quoted, error = wrong
-    announced = tender.rules.announced
-    by_shift = bool(error.shifted_places) and announced.misplaced_decimal == "total governs"
-    key = "misplaced_decimal" if by_shift else "unit_price_against_total"
-    sentence = rule_sentence(tender, key)
+    governs, sentence = _governing(tender, error)
     answer = _answer(decisions)
     findings = tuple(_told(offer, error, sentence, answer))
     used = () if answer is None else (answer,)
-    stated = _stated_total(offer, error)
-    items = _items_total(offer, lot)
-    if by_shift or announced.unit_price_against_total == "total governs":
-        units = _units_of(offer, stated, items)
-        unit = quotient(offer_id(offer, "corrected unit price"), "corrected unit price", quoted.unit, units, quantity)
-        correction = Correction("unit_price", quoted, unit, sentence, error.description, answer)
-        return Corrected(unit, units, (correction,), findings, used)
-    whole = product(offer_id(offer, "units"), "quantity times unit price", quoted.unit, quantity, quoted)
-    name = offer_id(offer, "corrected total price")
-    corrected = (
-        Figure(name, "corrected total price", whole.value, whole.unit, whole.source)
-        if items is None
-        else total(name, "corrected total price", whole.unit, whole, items)
+    if governs == "unit price":
+        stated, whole = _stated_total(offer, error), _total_of(offer, lot, quantity, quoted)
+        correction = Correction("total_price", stated, whole, sentence, error.description, answer)
+        return Corrected(quoted, None, (correction,), findings, used)
+    units = None if governs == "shifted unit price" else _units_of(offer, error, _items_total(offer, lot))
+    unit = (
+        _shifted(offer, quoted, error.shifted_places)
+        if units is None
+        else quotient(offer_id(offer, "corrected unit price"), "corrected unit price", quoted.unit, units, quantity)
     )
-    correction = Correction("total_price", stated, corrected, sentence, error.description, answer)
-    return Corrected(quoted, None, (correction,), findings, used)
+    correction = Correction("unit_price", quoted, unit, sentence, error.description, answer)
+    return Corrected(unit, units, (correction,), findings, used)
 
 
-def _units_of(offer: Offer, stated: Figure, items: Figure | None) -> Figure:
-    """Price of all units in a stated total; a total that would leave nothing for them has no items in it."""
-    if items is None or stated.value <= items.value:
-        return stated
-    return difference(offer_id(offer, "total of the units"), "stated total less items", stated.unit, stated, items)
+def _governing(tender: Tender, error: ScheduleError) -> tuple[_Governs, str]:
+    """Which figure governs, and the announced rule in a sentence."""
+    announced = tender.rules.announced
+    ordinary = rule_sentence(tender, "unit_price_against_total")
+    if error.misplaced is not None and announced.misplaced_decimal == "total governs":
+        if error.misplaced == "unit price":
+            return "shifted unit price", rule_sentence(tender, "misplaced_decimal")
+        if announced.unit_price_against_total == "total governs":
+            rule = rule_clause(tender, "misplaced_decimal")
+            return "unit price", f"{rule}; here it is the mark of the total, and the unit price governs."
+        return "unit price", ordinary
+    return "total" if announced.unit_price_against_total == "total governs" else "unit price", ordinary
+
+
+def _shifted(offer: Offer, quoted: Figure, places: int) -> Figure:
+    power = constant(f"ten to the power {places}", f"ten to the power {places}", Decimal(1).scaleb(places), "1",
+                     "the decimal mark moved")  # fmt: skip
+    return product(offer_id(offer, "corrected unit price"), "corrected unit price", quoted.unit, quoted, power)
+
+
+def _total_of(offer: Offer, lot: Lot, quantity: Figure, quoted: Figure) -> Figure:
+    """Total of the schedule by its unit price."""
+    whole = product(offer_id(offer, "units"), "quantity times unit price", quoted.unit, quantity, quoted)
+    name, items = offer_id(offer, "corrected total price"), _items_total(offer, lot)
+    if items is None:
+        return Figure(name, "corrected total price", whole.value, whole.unit, whole.source)
+    return total(name, "corrected total price", whole.unit, whole, items)
+
+
+def _units_of(offer: Offer, error: ScheduleError, items: Figure | None) -> Figure:
+    """Price of all units in a governing total, before the discount.
+
+    Without a reading that explains it a total holds the priced items and no discount; one that would leave nothing for
+    the units has no items in it.
+    """
+    units, reading = _stated_total(offer, error), error.reading
+    discount = offer.terms.unconditional_discount_percent
+    if reading is not None and reading.is_net and discount is not None:
+        part = share(offer_id(offer, "unconditional discount"), "unconditional discount", discount)
+        left = difference(offer_id(offer, "left by the discount"), "one less the discount", "1", one(), part)
+        units = quotient(
+            offer_id(offer, "total before discount"), "stated total before discount", units.unit, units, left
+        )
+    if items is None or not (units.value > items.value if reading is None else reading.has_items):
+        return units
+    return difference(offer_id(offer, "total of the units"), "stated total less items", units.unit, units, items)
 
 
 def _told(offer: Offer, error: ScheduleError, sentence: str, answer: Decision | None) -> Iterator[Finding]:
@@ -223,12 +199,6 @@ def _stated_total(offer: Offer, error: ScheduleError) -> Figure:
     return read(offer_id(offer, "total_price"), "total price as stated", stated.value, currency, stated.place)
 
 
-def _items(offer: Offer, lot: Lot) -> Decimal:
-    """Sum of the items that the bidder prices, those included that do not count."""
-    prices = ((item, stated_item_price(offer, item)) for item in lot.items)
-    return sum((item.quantity.value * price.value for item, price in prices if price is not None), Decimal(0))
-
-
 def _items_total(offer: Offer, lot: Lot) -> Figure | None:
     parts = []
     for item in lot.items:
@@ -238,28 +208,3 @@ def _items_total(offer: Offer, lot: Lot) -> Figure | None:
             parts.append(product(offer_id(offer, "item", name, "quoted for the lot"), f"{name}, quoted for the lot",
                                  price.unit, pieces(lot, item), price))  # fmt: skip
     return total(offer_id(offer, "items quoted"), "items quoted for the lot", parts[0].unit, *parts) if parts else None
-
-
-def _readings(units: Decimal, items: Decimal, offer: Offer) -> Iterator[Decimal]:
-    """Sums that a bidder may have meant by its total."""
-    discount = offer.terms.unconditional_discount_percent
-    left = Decimal(1) if discount is None else 1 - ARITHMETIC.divide(discount.value, Decimal(100))
-    for whole in (units, units + items):
-        yield whole
-        yield whole * left
-
-
-def _half_of_last_digit(stated: Quantity) -> Decimal:
-    """Half a unit of the last digit behind the decimal mark; half a unit for a whole number."""
-    exponent = min(int(stated.stated.as_tuple().exponent), 0)
-    return _HALF.scaleb(exponent)
-
-
-def _nearest_first() -> Iterator[int]:
-    for places in range(1, _MOST_PLACES + 1):
-        yield places
-        yield -places
-
-
-def _plain(value: Decimal) -> str:
-    return f"{value.normalize():f}"

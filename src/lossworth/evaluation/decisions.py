@@ -14,7 +14,7 @@ from ..records.decision import Decision
 from ..records.quantity import Quantity
 from ..records.tender import Tender
 from ..trail import read
-from .announced import rule_kind, rule_place, rule_sentence
+from .announced import rule_clause, rule_kind, rule_place, rule_sentence
 from .clerical_errors import find_clerical_errors
 from .clerical_errors_suspicion import LABELS, Suspicion, stated, value_of
 from .identities import figure_id
@@ -287,7 +287,7 @@ class _Judge:
     def __init__(self, tender: Tender, offers: Sequence[Offer]) -> None:
         self.tender, self.offers = tender, offers
         self.setting = tender.rules.announced.clarifications
-        self.sentence = rule_sentence(tender, _RULE)
+        self.sentence, self.clause = rule_sentence(tender, _RULE), rule_clause(tender, _RULE)
         self._suspicions: tuple[Suspicion, ...] | None = None
 
     def refusal(self, offer: Offer, field: str, decision: Decision) -> Finding | None:
@@ -300,10 +300,10 @@ class _Judge:
         if field in _EXPLAINING:
             return None
         if self.setting == "may not change price or guarantee":
-            return self._forbidden(field, decision, f"may not be changed by a clarification: {self.sentence}")
+            return self._forbidden(field, decision, f"may not be changed by a clarification: {self.clause}")
         if any(_is_rounded(proved, value, as_read) for proved in self._proved(offer, field)):
             return None
-        return self._forbidden(field, decision, f"is not what the bid itself proves: {self.sentence}")
+        return self._forbidden(field, decision, f"is not what the bid itself proves: {self.clause}")
 
     def _proved(self, offer: Offer, field: str) -> Iterator[Decimal]:
         """Values that the bidder's own schedule gives."""

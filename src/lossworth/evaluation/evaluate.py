@@ -22,7 +22,7 @@ from .lot_evaluation import LotWork, OfferWork, evaluate_offers, findings_by_off
 from .lot_rates import lot_rates
 from .needed_rules import check_exchange_day, needed_rules
 from .owning_cost import CostBasis
-from .price_adders import margin_share
+from .price_adders import check_delivered_point, margin_share
 from .pricing import exchange_rates
 from .regulation_limits import check_regulations_of_tender, regulation_cautions, regulation_limits
 from .result import EvaluatedOffer, Evaluation, LotEvaluation
@@ -76,8 +76,9 @@ def evaluate(
         *settled_by(known, confirmed.confirmations, offers),
         *confirmed.findings,
         *check_load_and_price(tender),
+        *check_delivered_point(tender),
         *check_regulations_of_tender(tender),
-        *needed_rules(tender, confirmed.offers),
+        *needed_rules(tender, confirmed.offers, confirmed.settled),
         *check_exchange_day(tender, offers),
     )
     if any_stops(known):

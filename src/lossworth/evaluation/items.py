@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
+from decimal import Decimal
 
 from ..findings import Finding
 from ..money import ARITHMETIC
@@ -221,24 +222,36 @@ def stand_in(offer: Offer, item: Item, lot: Lot, tender: Tender, others: Iterabl
     sentence = rule_sentence(tender, "missing_item")
     if rule == "reject":
         return StandIn(None, _finding("item-missing-rejected", offer, item, f"must be priced ({item.place})"), sentence)
-    prices = [
-        known.by_name[name]
-        for known in others
-        if name in known.by_name and known.offer.bidder.value != offer.bidder.value
-    ]
+    known = [each for each in others if name in each.by_name and each.offer.bidder.value != offer.bidder.value]
+    prices = [each.by_name[name] for each in known]
     if not prices:
         missing = "is not priced, and nobody whose price could stand in prices it"
         return StandIn(None, _finding("item-priced-by-nobody", offer, item, missing), sentence)
-    price = _average(offer, item, prices) if rule == "average of the others" else _highest(prices)
+    is_average = rule == "average of the others"
+    counted = known if is_average else [max(known, key=lambda each: _order(each, name))]
+    price = _average(offer, item, prices) if is_average else counted[0].by_name[name]
     amount = product(
         offer_id(offer, "item", name, "stand-in"), f"{name}, stand-in for the lot", price.unit, pieces(lot, item), price
     )
-    told = f"is not priced; {rule} stands in, for comparison only ({rule_place(tender, 'missing_item')})"
+    shown = f"{tender.rules.rounding.apply(amount.value):f} {amount.unit}"
+    whose = _whose(item, counted)
+    told = f"is not priced; {shown} for the lot, {rule} ({whose}), stands in, for comparison only"
+    told = f"{told} ({rule_place(tender, 'missing_item')})"
     return StandIn(amount, _finding("item-price-stands-in", offer, item, told), sentence)
 
 
-def _highest(prices: Sequence[Figure]) -> Figure:
-    return max(prices, key=lambda price: (price.value, price.id))
+def _order(prices: ItemPrices, name: str) -> tuple[Decimal, str]:
+    price = prices.by_name[name]
+    return price.value, price.id
+
+
+def _whose(item: Item, prices: Iterable[ItemPrices]) -> str:
+    """Offers with the cells of their prices."""
+    stated = [
+        (each.offer.name, stated_item_price(each.offer, item))
+        for each in sorted(prices, key=lambda each: each.offer.name)
+    ]
+    return ", ".join(f"{name}, {price.place}" for name, price in stated if price is not None)
 
 
 def _average(offer: Offer, item: Item, prices: Sequence[Figure]) -> Figure:

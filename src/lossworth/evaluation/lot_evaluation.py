@@ -9,7 +9,8 @@ from ..findings import Effect, Finding, Place
 from ..records.bid import Offer
 from ..records.decision import Decision
 from ..regulations.limits import Limit
-from .alternatives import left_out, needs_ranking
+from .alternatives import left_out, may_stand_in, needs_ranking
+from .clerical_errors_comparison import LotSeen
 from .commercial_checks import check_terms
 from .completeness import check_completeness
 from .corrections import Corrected, correct_schedule
@@ -22,6 +23,7 @@ from .ranking import rank_offers
 from .regulation_limits import check_regulation
 from .responsiveness import check_offer
 from .result import Correction, EvaluatedOffer, PriceStep, Status
+from .schedule_error import PriceCheck, price_levels
 from .ties import TieOrder, drawn_places
 from .waivers import decided, decisions_on
 
@@ -108,7 +110,8 @@ def evaluate_offers(lot: LotWork, offers: Sequence[OfferWork]) -> tuple[Evaluate
     tuple of EvaluatedOffer
         Ranked first, then non-responsive, then not evaluated.
     """
-    drafts = [_draft(lot, offer) for offer in offers]
+    seen = LotSeen(lot.basis.tender, lot.basis.lot, [offer.used for offer in offers])
+    drafts = [_draft(lot, offer, seen) for offer in offers]
     counting = _whose_prices_count(lot, drafts)
     evaluated = [_finished(lot, draft, counting) for draft in drafts]
     order = TieOrder(lot.basis.rules.announced.tie_order or (), drawn_places(lot.decisions, lot.basis.lot.id))
@@ -116,14 +119,16 @@ def evaluate_offers(lot: LotWork, offers: Sequence[OfferWork]) -> tuple[Evaluate
     return rank_offers(evaluated, lot.basis.rates, lot.basis.quantity, order)
 
 
-def _draft(lot: LotWork, work: OfferWork) -> _Draft:
+def _draft(lot: LotWork, work: OfferWork, seen: LotSeen) -> _Draft:
     basis, offer = lot.basis, work.used
     decisions = decisions_on(offer, lot.decisions)
     judged = on_basis(offer, basis.lot)
     found = (*work.found, *judged.findings)
     complete = check_completeness(judged, basis.lot, basis.rates, basis.tender, found)
     limits = (*check_offer(judged, basis.lot), *check_regulation(judged, basis.lot, lot.limits))
-    corrected = correct_schedule(offer, basis.tender, basis.lot, basis.quantity, decisions)
+    is_confirmed = any(each.field is not None and each.field.value == "unit_price" for each in work.confirming)
+    check = PriceCheck(price_levels(offer, seen), is_confirmed)
+    corrected = correct_schedule(offer, basis.tender, basis.lot, basis.quantity, decisions, check)
     price = unit_price(offer, corrected, basis.tender, basis.lot, basis.exchange_rates)
     terms = check_terms(offer, basis.tender, lot.stated_by_some)
     priced = () if price is None else price.findings
@@ -141,15 +146,16 @@ def _new(later: Iterable[Finding], before: tuple[Finding, ...]) -> tuple[Finding
 
 def _whose_prices_count(lot: LotWork, drafts: Sequence[_Draft]) -> tuple[ItemPrices, ...]:
     """Item prices that may stand in for a missing one, by the tender's rule."""
-    announced = lot.basis.rules.announced
-    if announced.missing_item_among != "responsive offers":
-        return tuple(draft.items for draft in drafts)
-    refused = announced.alternatives == "not accepted"
+    status = {
+        draft.offer.name: _status(decided(draft.work.as_read, draft.findings, draft.decisions).findings)
+        for draft in drafts
+    }
+    only_responsive = lot.basis.rules.announced.missing_item_among == "responsive offers"
     return tuple(
         draft.items
         for draft in drafts
-        if _status(decided(draft.work.as_read, draft.findings, draft.decisions).findings) is Status.RANKED
-        and not (refused and draft.offer.alternative is not None)
+        if may_stand_in(draft.offer, lot.basis.tender, status)
+        and (status[draft.offer.name] is Status.RANKED or not only_responsive)
     )
 
 
@@ -159,7 +165,9 @@ def _finished(lot: LotWork, draft: _Draft, counting: Sequence[ItemPrices]) -> Ev
     known = draft.price is not None and not _leave_unevaluated(draft.price.findings)
     price = OfferPrice(draft.price if known else None, items)
     per_unit, whole = owning_cost(draft.judged, basis, price)
-    judged = decided(offer, (*draft.findings, *items.findings), draft.decisions)
+    unread = _unread(decided(offer, draft.findings, draft.decisions).findings)
+    of_items = tuple(finding for finding in items.findings if finding.place not in unread)
+    judged = decided(offer, (*draft.findings, *of_items), draft.decisions)
     if _status(judged.findings) is Status.RANKED and whole.total_owning_cost is None:
         judged = replace(judged, findings=(*judged.findings, _no_total(offer)))
     confirmed = draft.work.confirmed
@@ -172,11 +180,17 @@ def _finished(lot: LotWork, draft: _Draft, counting: Sequence[ItemPrices]) -> Ev
         information(basis.tender, basis.lot, basis.rates, draft.judged),
         as_read=None if offer is draft.work.as_read else draft.work.as_read,
         corrections=(*confirmed, *corrected.corrections),
-        contract_price=contract_price(offer, corrected, basis.tender, basis.lot, basis.quantity),
+        contract_price=contract_price(offer, corrected, basis.lot, basis.quantity),
         total_without_preference=None,
         decisions=(*draft.work.confirming, *corrected.decisions, *judged.used),
     )
     return replace(_with_preference(evaluated, basis, price), price_steps=_steps(draft.price, price, evaluated, basis))
+
+
+def _unread(findings: Iterable[Finding]) -> frozenset[Place]:
+    """Places of values that cannot be read: none of them is missing."""
+    kinds = ("value-unreadable", "value-out-of-bounds", "value-not-read")
+    return frozenset(f.place for f in findings if f.place is not None and f.kind in kinds and not f.waiver)
 
 
 def _no_total(offer: Offer) -> Finding:
@@ -197,7 +211,11 @@ def _with_preference(offer: EvaluatedOffer, basis: CostBasis, price: OfferPrice)
     if not price.has_margin:
         return replace(offer, total_without_preference=offer.lot.total_owning_cost)
     _, without = owning_cost(offer.on_basis, basis, price, with_preference=False)
-    return replace(offer, total_without_preference=without.total_owning_cost)
+    return replace(
+        offer,
+        total_without_preference=without.total_owning_cost,
+        price_without_preference=without.evaluated_price,
+    )
 
 
 def _steps(

@@ -3,18 +3,20 @@
 from __future__ import annotations
 
 import datetime
-from collections.abc import Callable, Iterable, Iterator, Sequence
+from collections.abc import Callable, Collection, Iterable, Iterator, Sequence
 from dataclasses import dataclass
 
 from ..findings import Finding, Place
 from ..records.bid import Offer
 from ..records.tender import Lot, Tender
 from .announced import rule_kind, rule_place
-from .corrections import schedule_error
+from .clerical_errors_comparison import LotSeen
 from .items import missing_items
 from .loss_tolerance import claims_tolerance
 from .payment_terms import payments_differ
 from .price_line import tax_change
+from .schedule_error import PriceCheck, price_levels, schedule_error
+from .shares import percent_text
 
 __all__ = ["check_exchange_day", "needed_rules"]
 
@@ -44,7 +46,9 @@ class _Need:
     offer: Offer | None = None
 
 
-def needed_rules(tender: Tender, offers: Iterable[Offer]) -> tuple[Finding, ...]:
+def needed_rules(
+    tender: Tender, offers: Iterable[Offer], confirmed: Collection[tuple[str, str, str]] = ()
+) -> tuple[Finding, ...]:
     """Findings on rules and adders that are needed and not announced; each of them stops the evaluation.
 
     Parameters
@@ -53,6 +57,8 @@ def needed_rules(tender: Tender, offers: Iterable[Offer]) -> tuple[Finding, ...]
         As announced, its profile of rules settled.
     offers : iterable of Offer
         As read, or with confirmed values.
+    confirmed : collection of (str, str, str)
+        Name of the offer, lot and field of what a bidder has confirmed.
 
     Returns
     -------
@@ -67,16 +73,22 @@ def needed_rules(tender: Tender, offers: Iterable[Offer]) -> tuple[Finding, ...]
         key=lambda offer: (position[offer.lot.value], offer.name),
     )
     by_key: dict[str, _Need] = {}
-    for need in (*_needs_of_tender(tender, ordered), *_needs_of_offers(tender, ordered)):
+    for need in (*_needs_of_tender(tender, ordered), *_needs_of_offers(tender, ordered, confirmed)):
         by_key.setdefault(need.key, need)
     return tuple(_unset(tender, need) for need in by_key.values() if not _is_set(tender, need.key))
 
 
-def _needs_of_offers(tender: Tender, offers: Sequence[Offer]) -> Iterator[_Need]:
+def _needs_of_offers(
+    tender: Tender, offers: Sequence[Offer], confirmed: Collection[tuple[str, str, str]]
+) -> Iterator[_Need]:
     lots = {lot.id: lot for lot in tender.lots}
+    seen = {lot.id: LotSeen(tender, lot, [o for o in offers if o.lot.value == lot.id]) for lot in tender.lots}
     for offer in offers:
+        lot = lots[offer.lot.value]
+        is_confirmed = (offer.name, lot.id, "unit_price") in confirmed
+        yield from _arithmetic(tender, lot, offer, PriceCheck(price_levels(offer, seen[lot.id]), is_confirmed))
         for find in _FINDERS:
-            yield from find(tender, lots[offer.lot.value], offer)
+            yield from find(tender, lot, offer)
 
 
 def _is_set(tender: Tender, key: str) -> bool:
@@ -101,17 +113,18 @@ def _unset(tender: Tender, need: _Need) -> Finding:
 # What one offer needs
 
 
-def _arithmetic(tender: Tender, lot: Lot, offer: Offer) -> Iterator[_Need]:
-    error = schedule_error(offer, lot, tender.rules.rounding.quantum)
+def _arithmetic(tender: Tender, lot: Lot, offer: Offer, check: PriceCheck) -> Iterator[_Need]:
+    error = schedule_error(offer, lot, check)
     if error is None:
         return
     rules, place, text = tender.rules.announced, error.stated_total.place, error.stated_total.text
     yield _Need("arithmetic_errors", error.description, place, text, offer)
     if rules.arithmetic_errors != "correct":
         return
-    if error.shifted_places:
+    exception = rules.misplaced_decimal
+    if error.misplaced is not None:
         yield _Need("misplaced_decimal", error.description, place, text, offer)
-    if not error.shifted_places or rules.misplaced_decimal == "no exception":
+    if error.misplaced is None or exception == "no exception" or (error.misplaced == "total" and exception is not None):
         yield _Need("unit_price_against_total", error.description, place, text, offer)
 
 
@@ -122,7 +135,7 @@ def _discounts(_tender: Tender, _lot: Lot, offer: Offer) -> Iterator[_Need]:
         ("prompt_payment_discounts", stated.prompt_payment_discount_percent),
     ):
         if discount is not None and discount.value > 0:
-            yield _Need(key, "a bidder grants such a discount", discount.place, f"{discount.text} %", offer)
+            yield _Need(key, "a bidder grants such a discount", discount.place, percent_text(discount), offer)
 
 
 def _taxes(tender: Tender, _lot: Lot, offer: Offer) -> Iterator[_Need]:
@@ -161,7 +174,7 @@ def _tolerance(_tender: Tender, _lot: Lot, offer: Offer) -> Iterator[_Need]:
     claimed = offer.terms.claimed_tolerance_percent
     if claimed is not None and claims_tolerance(offer):
         why = "a bidder claims a plus tolerance on its losses"
-        yield _Need("loss_tolerance", why, claimed.place, f"{claimed.text} %", offer)
+        yield _Need("loss_tolerance", why, claimed.place, percent_text(claimed), offer)
 
 
 def _variation(_tender: Tender, _lot: Lot, offer: Offer) -> Iterator[_Need]:
@@ -177,7 +190,6 @@ def _alternative(_tender: Tender, _lot: Lot, offer: Offer) -> Iterator[_Need]:
 
 
 _FINDERS: tuple[Callable[[Tender, Lot, Offer], Iterator[_Need]], ...] = (
-    _arithmetic,
     _discounts,
     _taxes,
     _payments,

@@ -149,7 +149,8 @@ def owning_cost(
     -----
     TOC = evaluated price + A P0 + B Pk + C Paux. Where the tender rounds each cost part per unit, the lot is quantity
     times unit, and further items are one more amount of the lot, rounded once; where it rounds each part per lot, the
-    parts of one unit stay exact. Amounts per unit are without further items. Where cooling is valued through A and B:
+    parts of one unit stay exact. A price that comes from a governing total is rounded for the lot under either rule.
+    Amounts per unit are without further items. Where cooling is valued through A and B:
     A (P0 + Pc0) + B (Pk + Pcs - Pc0) after IEC TS 60076-20 (from memory), and C does not act.
 
     References
@@ -176,7 +177,7 @@ class _Sums:
         for part in _PARTS[1:]:
             lot[part] = self._lot_part(part, unit[part], None if self.per_unit_rule else self.basis.rules.rounding)
         unit["total_owning_cost"] = self._sum("per unit", unit)
-        if self.per_unit_rule and not self._items() and self.price.items.is_complete:
+        if self.per_unit_rule and not self._items() and self.price.items.is_complete and not self._is_of_total():
             lot["total_owning_cost"] = self._lot_part("total_owning_cost", unit["total_owning_cost"], None)
         else:
             lot["total_owning_cost"] = self._sum("lot", lot)
@@ -189,6 +190,10 @@ class _Sums:
         items = self.price.items
         return (*items.amounts, items.margin) if items.margin is not None and self.with_margin else items.amounts
 
+    def _is_of_total(self) -> bool:
+        """Whether the price of the lot is a governing total: its unit price need not come out even."""
+        return self.price.unit is not None and self.price.unit.is_of_total
+
     # Per unit
 
     def _unit(self) -> dict[str, Figure | None]:
@@ -199,11 +204,12 @@ class _Sums:
             parts[part] = self._unit_cost(part, factors[part], rounding)
         return parts
 
-    def _unit_price(self, rounding: Rounding | None) -> Figure | None:
+    def _unit_price(self, rounding: Rounding | None, *exact: str) -> Figure | None:
         price = self.price.unit
         if price is None:
             return None
-        identity, label = self._id("per unit", "evaluated_price"), f"{_LABELS['evaluated_price']} per unit"
+        identity = "/".join((self._id("per unit", "evaluated_price"), *exact))
+        label = f"{_LABELS['evaluated_price']} per unit"
         adders = price.adders if price.margin is None or not self.with_margin else (*price.adders, price.margin)
         if adders:
             return total(identity, label, self.basis.currency, price.price, *adders, rounding=rounding)
@@ -260,12 +266,23 @@ class _Sums:
         """Quantity times unit, and the further items: as amounts of the lot they are rounded once."""
         if per_unit is None or not self.price.items.is_complete:
             return None
-        rounding, items = self.basis.rules.rounding, self._items()
+        rounding, items, is_of_total = self.basis.rules.rounding, self._items(), self._is_of_total()
+        if is_of_total and self.per_unit_rule:
+            per_unit = self._unit_price(None, "exact") or per_unit
         if not items:
-            return self._lot_part("evaluated_price", per_unit, None if self.per_unit_rule else rounding)
+            is_rounded = is_of_total or not self.per_unit_rule
+            return self._lot_part("evaluated_price", per_unit, rounding if is_rounded else None)
         identity, label = self._id("lot", "evaluated_price"), f"{_LABELS['evaluated_price']} of the lot"
         currency = self.basis.currency
-        units = product(f"{identity}/units", "price of all units", currency, self.basis.quantity, per_unit)
+        at_once = rounding if is_of_total and self.per_unit_rule else None
+        units = product(
+            f"{identity}/units",
+            "price of all units",
+            currency,
+            self.basis.quantity,
+            per_unit,
+            rounding=at_once,
+        )
         if not self.per_unit_rule:
             return total(identity, label, currency, units, *items, rounding=rounding)
         further = total(f"{identity}/items", "further items of the lot", currency, *items, rounding=rounding)

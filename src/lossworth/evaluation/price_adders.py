@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterator
 from dataclasses import dataclass, field
 from typing import get_args
@@ -16,7 +17,16 @@ from .announced import rule_sentence
 from .identities import figure_id, is_one_of, offer_id
 from .shares import share
 
-__all__ = ["Adder", "Adders", "delivered_adders", "delivery_time_adders", "margin_share", "point_term", "site_costs"]
+__all__ = [
+    "Adder",
+    "Adders",
+    "check_delivered_point",
+    "delivered_adders",
+    "delivery_time_adders",
+    "margin_share",
+    "point_term",
+    "site_costs",
+]
 
 
 @dataclass(frozen=True, slots=True)
@@ -61,7 +71,28 @@ def point_term(tender: Tender) -> str | None:
         ``"DDP"``; None where the point names no term.
     """
     words = "" if tender.delivered_point is None else tender.delivered_point.value.upper()
-    return next((word for word in words.split() if word in get_args(Incoterm)), None)
+    return next((word for word in re.split(r"[^A-Z]+", words) if word in get_args(Incoterm)), None)
+
+
+def check_delivered_point(tender: Tender) -> Iterator[Finding]:
+    """A delivered point to which adders lead names the term that they lead to.
+
+    Parameters
+    ----------
+    tender : Tender
+        With its delivered point and its adders.
+
+    Yields
+    ------
+    Finding
+        ``"tender-value"`` where the point names none.
+    """
+    point = tender.delivered_point
+    if point is not None and tender.delivery_levels and point_term(tender) is None:
+        terms = ", ".join(get_args(Incoterm))
+        rule = f"must name the delivery term to which the adders lead ({terms})"
+        fix = 'Name the term beside the place: "DDP site".'
+        yield Finding("tender-value", "delivery.point", rule, point.place, point.value, fix=fix)
 
 
 def delivered_adders(offer: Offer, tender: Tender, price: Figure) -> Adders:

@@ -17,7 +17,7 @@ from ..trail import Figure, difference, product, quotient, read
 from .announced import rule_sentence
 from .identities import figure_id, offer_id
 from .result import PriceStep
-from .shares import one_and, share
+from .shares import one_and, percent_text, share
 
 __all__ = ["Line", "deducts", "draw_line", "quoted_price", "tax_change"]
 
@@ -156,7 +156,9 @@ def _discounted(line: Line, names: tuple[str, ...], offer: Offer, tender: Tender
     amount = product(offer_id(offer, *names, name), f"{name}, amount", unit, line.price, part)
     after = difference(offer_id(offer, *names, f"less {name}"), f"price less {name}", unit, line.price, amount)
     rule = next(rule for known, _, rule in _DISCOUNTS if known == name)
-    step = PriceStep(name, f"{name} of {percent.text} %", "unit", "−", amount, after, rule_sentence(tender, rule))
+    step = PriceStep(
+        name, f"{name} of {percent_text(percent)}", "unit", "−", amount, after, rule_sentence(tender, rule)
+    )
     return _stepped(line, step)
 
 

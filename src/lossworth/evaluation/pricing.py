@@ -9,9 +9,11 @@ a cent. A step is made only where the tender announces it and the bid needs it.
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
+from decimal import Decimal
 
 from ..findings import Finding
+from ..money import Rounding, RoundingMode
 from ..records.bid import Offer
 from ..records.tender import Lot, Tender
 from ..trail import Figure, difference, product, read, rounded, total
@@ -26,6 +28,9 @@ from .result import PriceStep
 from .shares import share
 
 __all__ = ["ItemsPrice", "UnitPrice", "contract_price", "exchange_rates", "items_price", "quoted_price", "unit_price"]
+
+#: What is paid is paid in the minor unit of a currency, whatever the evaluation rounds to.
+_MINOR_UNIT = Rounding(Decimal("0.01"), RoundingMode.HALF_AWAY_FROM_ZERO)
 
 
 @dataclass(frozen=True, slots=True)
@@ -46,6 +51,8 @@ class UnitPrice:
         The chain without its last, rounded step.
     findings : tuple of Finding
         What is said of the price; one that leaves the offer unevaluated where an adder is not known.
+    is_of_total : bool
+        Whether the price is a governing total over the quantity: then the lot is exact, and the unit is not.
     """
 
     factors: tuple[Figure, ...]
@@ -54,6 +61,7 @@ class UnitPrice:
     margin: Figure | None = None
     steps: tuple[PriceStep, ...] = ()
     findings: tuple[Finding, ...] = ()
+    is_of_total: bool = False
 
 
 @dataclass(frozen=True, slots=True)
@@ -143,15 +151,15 @@ def unit_price(
     line = draw_line(_start(quoted, corrected), ("price",), offer, tender, exchange)
     if line is None:
         return None
-    return _with_adders(line, offer, tender, lot)
+    return replace(_with_adders(line, offer, tender, lot), is_of_total=corrected.units_total is not None)
 
 
 def _start(quoted: Figure, corrected: Corrected) -> Line:
     first = PriceStep("quoted", "quoted unit price", "unit", "", None, quoted, "As the bidder states it.")
     unit = corrected.unit_price
-    if unit is None or unit is quoted or not corrected.corrections or corrected.units_total is None:
+    why = next((each for each in corrected.corrections if each.field == "unit_price"), None)
+    if unit is None or why is None:
         return Line(quoted, (quoted,), (first,))
-    why = corrected.corrections[0]
     step = PriceStep("corrected", "corrected unit price", "unit", "", None, unit, f"{why.rule} {why.reason}.")
     return Line(unit, (unit,), (first, step))
 
@@ -277,7 +285,7 @@ def _steps_of_items(offer: Offer, adders: Sequence[Adder]) -> tuple[PriceStep, .
     return tuple(steps)
 
 
-def contract_price(offer: Offer, corrected: Corrected, tender: Tender, lot: Lot, quantity: Figure) -> Figure | None:
+def contract_price(offer: Offer, corrected: Corrected, lot: Lot, quantity: Figure) -> Figure | None:
     """What would be paid for the lot: nothing that serves the comparison alone is in it.
 
     Parameters
@@ -286,8 +294,6 @@ def contract_price(offer: Offer, corrected: Corrected, tender: Tender, lot: Lot,
         As read, or with confirmed values.
     corrected : Corrected
         Its unit price, or its total, after the arithmetic check.
-    tender : Tender
-        For the rounding.
     lot : Lot
         With the items that count.
     quantity : Figure
@@ -296,8 +302,8 @@ def contract_price(offer: Offer, corrected: Corrected, tender: Tender, lot: Lot,
     Returns
     -------
     Figure or None
-        Units and priced items that count, less the unconditional discount, rounded once; None where the price is not
-        stated. [currency of the offer]
+        Units and priced items that count, less the unconditional discount, rounded once to 0.01; None where the price
+        is not stated. [currency of the offer]
 
     Notes
     -----
@@ -317,7 +323,6 @@ def contract_price(offer: Offer, corrected: Corrected, tender: Tender, lot: Lot,
             name = item.name.value
             parts.append(product(offer_id(offer, "contract", "item", name), f"{name}, as quoted for the lot",
                                  price.unit, pieces(lot, item), price))  # fmt: skip
-    label, rounding = "contract price of the lot", tender.rules.rounding
     whole = parts[0]
     if len(parts) > 1:
         whole = total(offer_id(offer, "contract", "whole"), "price of units and items", whole.unit, *parts)
@@ -326,4 +331,4 @@ def contract_price(offer: Offer, corrected: Corrected, tender: Tender, lot: Lot,
         part = share(offer_id(offer, "unconditional discount"), "unconditional discount", percent)
         amount = product(offer_id(offer, "contract", "discount"), "discount on the lot", whole.unit, whole, part)
         whole = difference(offer_id(offer, "contract", "discounted"), "price less discount", whole.unit, whole, amount)
-    return rounded(offer_id(offer, "contract_price"), label, whole, rounding)
+    return rounded(offer_id(offer, "contract_price"), "contract price of the lot", whole, _MINOR_UNIT)

@@ -68,9 +68,8 @@ def rank_offers(
         key=lambda o: (o.status is Status.NOT_EVALUATED, o.name),
     )
     placed = _placed(in_play, order, lambda offer: _total(offer).value)
-    without = {
-        offer.name: rank for offer, rank, _ in _placed(in_play, order, lambda offer: _without_preference(offer).value)
-    }
+    beside = _placed(in_play, order, lambda offer: _without_preference(offer).value, with_preference=False)
+    without = {offer.name: rank for offer, rank, _ in beside}
     ranked = [offer for offer, _, _ in placed]
     totals = [_total(offer).value for offer in ranked]
     finished = [
@@ -88,13 +87,18 @@ def rank_offers(
 
 
 def _placed(
-    offers: Sequence[EvaluatedOffer], order: TieOrder, amount: Callable[[EvaluatedOffer], Decimal]
+    offers: Sequence[EvaluatedOffer],
+    order: TieOrder,
+    amount: Callable[[EvaluatedOffer], Decimal],
+    *,
+    with_preference: bool = True,
 ) -> list[tuple[EvaluatedOffer, int, str | None]]:
     """Offers by amount, each with its rank and the criterion that parts it from others of the same amount."""
     placed: list[tuple[EvaluatedOffer, int, str | None]] = []
     for _, same in groupby(sorted(offers, key=lambda offer: (amount(offer), offer.name)), key=amount):
         before = len(placed)
-        placed += [(tied.offer, before + tied.place, tied.decided_by) for tied in order.apart(list(same))]
+        apart = order.apart(list(same), with_preference=with_preference)
+        placed += [(tied.offer, before + tied.place, tied.decided_by) for tied in apart]
     return placed
 
 

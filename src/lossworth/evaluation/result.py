@@ -288,6 +288,8 @@ class EvaluatedOffer:
         the bidder prices; no adder, no margin, no price of others. Rounded once. [currency of the offer]
     total_without_preference : Figure or None
         Total owning cost of the lot without a preference margin; None where the tender applies none.
+    price_without_preference : Figure or None
+        Evaluated price of the lot without a preference margin; None where none lies on the offer.
     rank_without_preference : int or None
         Rank by these totals, the announced tie order applied to their ties.
     tie_decided_by : str or None
@@ -311,6 +313,7 @@ class EvaluatedOffer:
     price_steps: tuple[PriceStep, ...] = ()
     contract_price: Figure | None = None
     total_without_preference: Figure | None = None
+    price_without_preference: Figure | None = None
     rank_without_preference: int | None = None
     tie_decided_by: str | None = None
     decisions: tuple[Decision, ...] = ()

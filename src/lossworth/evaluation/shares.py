@@ -7,7 +7,7 @@ from decimal import Decimal
 from ..records.quantity import Quantity
 from ..trail import Figure, constant, quotient, read, total
 
-__all__ = ["one", "one_and", "share"]
+__all__ = ["one", "one_and", "percent_text", "share"]
 
 
 def share(identity: str, label: str, percent: Quantity, unit: str = "%") -> Figure:
@@ -31,6 +31,22 @@ def share(identity: str, label: str, percent: Quantity, unit: str = "%") -> Figu
     hundred = constant("percent in 1", "percent in 1", Decimal(100), "%", "1 = 100 %")
     left = unit.removeprefix("%").removeprefix("/")
     return quotient(f"{identity}/share", f"{label} as a share", f"1/{left}" if left else "1", stated, hundred)
+
+
+def percent_text(percent: Quantity) -> str:
+    """A percentage as it stands, with one sign behind it.
+
+    Parameters
+    ----------
+    percent : Quantity
+        As stated, with or without the sign in its cell.
+
+    Returns
+    -------
+    str
+        ``"5 %"``.
+    """
+    return f"{percent.text.strip().removesuffix('%').strip()} %"
 
 
 def one() -> Figure:

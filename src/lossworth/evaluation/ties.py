@@ -31,20 +31,22 @@ class TieOrder:
     criteria: tuple[TieBreaker, ...]
     drawn: Mapping[str, int]
 
-    def apart(self, tied: Sequence[EvaluatedOffer]) -> tuple[Tied, ...]:
+    def apart(self, tied: Sequence[EvaluatedOffer], *, with_preference: bool = True) -> tuple[Tied, ...]:
         """Put offers of the same total in order.
 
         Parameters
         ----------
         tied : sequence of EvaluatedOffer
             In the order of names.
+        with_preference : bool
+            Whether evaluated prices are compared with the preference margin on them.
 
         Returns
         -------
         tuple of Tied
             In the order of the criteria; those that no criterion parts keep one place and the order of names.
         """
-        groups = self._groups(list(tied), self.criteria)
+        groups = self._groups(list(tied), self.criteria, with_preference=with_preference)
         placed, place = [], 1
         for number, (members, before) in enumerate(groups):
             after = groups[number + 1][1] if number + 1 < len(groups) else None
@@ -54,28 +56,30 @@ class TieOrder:
         return tuple(placed)
 
     def _groups(
-        self, offers: list[EvaluatedOffer], criteria: tuple[TieBreaker, ...]
+        self, offers: list[EvaluatedOffer], criteria: tuple[TieBreaker, ...], *, with_preference: bool
     ) -> list[tuple[list[EvaluatedOffer], TieBreaker | None]]:
         """Groups that stay tied, each with the criterion that parts it from the group before it."""
         if len(offers) < 2 or not criteria:
             return [(offers, None)]
         first, rest = criteria[0], criteria[1:]
-        keys = [self._key(first, offer) for offer in offers]
+        keys = [self._key(first, offer, with_preference=with_preference) for offer in offers]
         if first == "drawing of lots" and _NEVER in keys:
             keys = [_NEVER] * len(offers)  # all tied offers draw, or none
         groups: list[tuple[list[EvaluatedOffer], TieBreaker | None]] = []
         for value in sorted(set(keys)):
             same = [offer for offer, key in zip(offers, keys, strict=True) if key == value]
-            inner = self._groups(same, rest)
+            inner = self._groups(same, rest, with_preference=with_preference)
             if groups:
                 inner[0] = (inner[0][0], first)
             groups += inner
         return groups
 
-    def _key(self, criterion: TieBreaker, offer: EvaluatedOffer) -> Decimal:
+    def _key(self, criterion: TieBreaker, offer: EvaluatedOffer, *, with_preference: bool) -> Decimal:
         if criterion == "drawing of lots":
             place = self.drawn.get(offer.name)
             return _NEVER if place is None else Decimal(place)
+        if criterion == "lower evaluated price" and not with_preference and offer.price_without_preference is not None:
+            return offer.price_without_preference.value
         return _KEYS[criterion](offer)
 
 
