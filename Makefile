@@ -11,7 +11,7 @@ PYTHON ?= python3
 WORKERS ?= 2
 BIN := .venv/bin
 SCRIPTS := sample_bids/make_sample_bids.py benchmarks/help_time.py benchmarks/rates_speed.py \
-	benchmarks/cooling_speed.py docs/make_findings.py docs/make_pictures.py \
+	benchmarks/cooling_speed.py benchmarks/break_even_speed.py docs/make_findings.py docs/make_pictures.py \
 	docs/make_load_profile_table.py docs/example_power_tender/make_profile.py tests/wheel_check.py
 
 export PIP_DISABLE_PIP_VERSION_CHECK := 1
@@ -64,9 +64,10 @@ benchmark: .venv/installed-for-tests ## how long the help, and the rates of many
 	$(BIN)/python benchmarks/help_time.py
 	$(BIN)/python benchmarks/rates_speed.py
 	$(BIN)/python benchmarks/cooling_speed.py
+	$(BIN)/python benchmarks/break_even_speed.py
 
 clean: ## remove what was made here, also the virtual environment
-	rm -rf .venv build dist *.egg-info src/*.egg-info .pytest_cache .mypy_cache .ruff_cache .hypothesis sample_bids/papers
+	rm -rf .venv build dist *.egg-info src/*.egg-info .pytest_cache .mypy_cache .ruff_cache .hypothesis sample_bids/papers docs/example_power_tender/papers
 	find src tests templates sample_bids docs benchmarks -name __pycache__ -type d -prune -exec rm -rf {} +
 
 .venv/bin/python:

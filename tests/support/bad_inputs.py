@@ -16,15 +16,14 @@ from .bad_input_cases import (
     table_headed,
     table_with,
     table_without,
-    tender_case,
     tender_with,
     xlsx_case,
     zip_bytes,
 )
+from .bad_tenders import TENDERS
 from .tender_folders import (
     HEADER,
     ROWS,
-    TENDER,
     csv_text,
     table_workbook,
     with_member,
@@ -39,6 +38,13 @@ _GOOD_BOOK = workbook_bytes()
 _BIRCH = csv_text().index("Birch")
 _OLD_BOOK = b"\xd0\xcf\x11\xe0\xa1\xb1\x1a\xe1" + bytes(1000)
 _LOAD = "Load loss [kW]"
+#: Another bidder's alternative, and one cell of the price and another merged into one.
+_ESTER = (
+    "Lot,Bidder,Currency,Unit price,No-load loss [kW],Load loss [kW],Alternative\n1,Alder,NCU,5000,0.12,1.2,ester\n"
+)
+_ALTERNATIVES = tender_with("[exchange]", 'alternatives = "as offers of their own"\n[exchange]')
+_MERGED = '</sheetData><mergeCells count="1"><mergeCell ref="D2:D3"/></mergeCells>'
+_LOCKED_BOOK = _OLD_BOOK + "EncryptedPackage".encode("utf-16-le") + bytes(500)
 _MILLION_LAUGHS = '<!DOCTYPE x [<!ENTITY a "ha"><!ENTITY b "&a;&a;">]><worksheet'
 
 FILES = (
@@ -58,6 +64,26 @@ FILES = (
         "csv with NUL",
         csv_text().replace("Birch", "Bi\0rch", 1),
         ("file-unreadable", "bids/offers.csv:4", f"a NUL at byte {_BIRCH + 2}"),
+    ),
+    csv_case(
+        "csv in two encodings",
+        csv_text().replace("Birch", "Bürch", 1).encode()
+        + csv_text(rows=[ROWS[0]]).replace("Al", "Ål").encode("latin-1"),
+        (
+            "file-unreadable",
+            "bids/offers.csv:7",
+            f"byte 0xC5 at byte {len(csv_text().encode()) + 1 + csv_text().index('Alder')}",
+        ),
+    ),
+    csv_case(
+        "csv with a million columns",
+        ",".join(HEADER) + ",x" * 1_000_000 + "\n",
+        ("file-too-large", "bids/offers.csv", None),
+    ),
+    csv_case(
+        "csv with 300 columns",
+        csv_text([*HEADER, *(f"x{n}" for n in range(291))], [[*row, *[""] * 291] for row in ROWS]),
+        ("file-too-large", "bids/offers.csv", None),
     ),
     csv_case("binary file named csv", random_bytes(), ("file-unreadable", "bids/offers.csv:1", "byte 0x8A at byte 2")),
     csv_case(
@@ -91,6 +117,22 @@ FILES = (
         "old xls named xlsx",
         _OLD_BOOK,
         ("file-unreadable", "bids/offers.xlsx", "the older .xls format, or a password"),
+    ),
+    xlsx_case("xlsx with a password", _LOCKED_BOOK, ("file-unreadable", "bids/offers.xlsx", "a password")),
+    xlsx_case(
+        "xlsx with macros",
+        with_member(_GOOD_BOOK, "xl/vbaProject.bin", lambda _: b"x"),
+        ("file-unreadable", "bids/offers.xlsx", "xl/vbaProject.bin"),
+    ),
+    xlsx_case(
+        "xlsx that leads to other files",
+        with_member(_GOOD_BOOK, "xl/externalLinks/externalLink1.xml", lambda _: b"<externalLink/>"),
+        ("workbook-links", "bids/offers.xlsx", None),
+    ),
+    xlsx_case(
+        "xlsx nested deeply",
+        with_sheet_xml(_GOOD_BOOK, "<sheetData>", f"{'<x>' * 300}{'</x>' * 300}<sheetData>"),
+        ("file-too-large", "bids/offers.xlsx", None),
     ),
     xlsx_case("old xls", _OLD_BOOK, ("file-unreadable", "bids/offers.xls", "offers.xls"), name="offers.xls"),
     xlsx_case("macro workbook", _GOOD_BOOK, ("file-unreadable", "bids/offers.xlsm", "offers.xlsm"), name="offers.xlsm"),
@@ -166,6 +208,32 @@ HEADERS = (
         table_headed("Delivery [weeks]", "Delivery [days]"),
         ("column-unit", "bids/offers.csv:1[Delivery [days]]", "Delivery [days]"),
     ),
+    csv_case(
+        "discount without unit",
+        csv_text([*HEADER, "Discount"], [[*row, 3] for row in ROWS]),
+        ("column-unit", "bids/offers.csv:1[Discount]", "Discount"),
+    ),
+    csv_case(
+        "item that the tender does not have",
+        csv_text([*HEADER, "Item: bushing"], [[*row, 3] for row in ROWS]),
+        ("column-not-read", "bids/offers.csv:1[Item: bushing]", "Item: bushing"),
+    ),
+    xlsx_case(
+        "merged cells in a table of offers",
+        with_sheet_xml(_GOOD_BOOK, "</sheetData>", _MERGED),
+        ("cells-merged", "bids/offers.xlsx[Offers]!D2:D3", "D2:D3"),
+    ),
+    xlsx_case(
+        "hidden sheet with offers",
+        with_member(
+            workbook_bytes({"Letter": [["Dear buyer"]], "Offers": (HEADER, *ROWS)}),
+            "xl/workbook.xml",
+            lambda content: content.replace(
+                b'name="Offers" sheetId="2" state="visible"', b'name="Offers" sheetId="2" state="hidden"'
+            ),
+        ),
+        ("offers-hidden", "bids/offers.xlsx[Offers]", "Offers"),
+    ),
     csv_case("header without rows", csv_text(rows=[]), ("no-offers", "bids/offers.csv", None)),
 )
 
@@ -179,6 +247,11 @@ ROWS_AND_CELLS = (
         {"a.xlsx": _GOOD_BOOK, "b.csv": csv_text(rows=[(1, "ALDER", *ROWS[0][2:])])},
         ("offer-twice", "bids/b.csv:2", None),
     ),
+    BadInput(
+        "alternative without base offer",
+        lambda folder: write_folder(folder, tender=_ALTERNATIVES, bids={"offers.csv": _ESTER}),
+        (("alternative-without-base", "bids/offers.csv:2[Alternative]", "ester"),),
+    ),
     csv_case("load loss blank", table_with(_LOAD, ""), ("value-missing", "bids/offers.csv:2[Load loss [kW]]", "")),
     csv_case("price blank", table_with("Unit price", ""), ("value-missing", "bids/offers.csv:2[Unit price]", "")),
     csv_case("currency blank", table_with("Currency", ""), ("value-missing", "bids/offers.csv:2[Currency]", "")),
@@ -190,6 +263,27 @@ ROWS_AND_CELLS = (
     csv_case("n/a in a number", table_with(_LOAD, "n/a"), ("value-unreadable", f"bids/offers.csv:2[{_LOAD}]", "n/a")),
     csv_case(
         "unit in a cell", table_with(_LOAD, "1.2 kW"), ("value-unreadable", f"bids/offers.csv:2[{_LOAD}]", "1.2 kW")
+    ),
+    csv_case(
+        "digits of full width",
+        table_with(_LOAD, "\uff11.\uff12"),
+        ("value-unreadable", f"bids/offers.csv:2[{_LOAD}]", "\uff11.\uff12"),
+    ),
+    csv_case(
+        "minus of a typographer",
+        table_with(_LOAD, "\u20131.2"),
+        ("value-out-of-bounds", f"bids/offers.csv:2[{_LOAD}]", "\u20131.2"),
+    ),
+    csv_case(
+        "30 digits",
+        table_with("Unit price", "9" * 30),
+        ("value-out-of-bounds", "bids/offers.csv:2[Unit price]", "9" * 30),
+    ),
+    csv_case("infinity", table_with(_LOAD, "inf"), ("value-unreadable", f"bids/offers.csv:2[{_LOAD}]", "inf")),
+    csv_case(
+        "formula as number",
+        table_with(_LOAD, "=1+0.2"),
+        ("value-unreadable", f"bids/offers.csv:2[{_LOAD}]", "=1+0.2"),
     ),
     csv_case("NaN", table_with(_LOAD, "NaN"), ("value-unreadable", f"bids/offers.csv:2[{_LOAD}]", "NaN")),
     csv_case("1e308", table_with(_LOAD, "1e308"), ("value-out-of-bounds", f"bids/offers.csv:2[{_LOAD}]", "1e308")),
@@ -257,80 +351,6 @@ ROWS_AND_CELLS = (
         "workbook without bidder",
         workbook_bytes({"Offers": ([HEADER[0], *HEADER[2:]], [ROWS[0][0], *ROWS[0][2:]])}),
         ("bidder-missing", "bids/offers.xlsx[Offers]!A2", ""),
-    ),
-)
-
-TENDERS = (
-    tender_case("tender missing", None, ("file-missing", "tender.toml", None)),
-    tender_case("tender empty", b"", ("file-unreadable", "tender.toml", "0 bytes")),
-    tender_case("binary file named toml", random_bytes(), ("file-unreadable", "tender.toml:1", "byte 0x8A at byte 2")),
-    tender_case(
-        "tender in another encoding",
-        TENDER.replace("Invented", "Invünted", 1).encode("latin-1"),
-        ("file-unreadable", "tender.toml:6", f"byte 0xFC at byte {TENDER.index('Invented') + 3}"),
-    ),
-    tender_case(
-        "tender syntax",
-        tender_with('title = "Two lots for tests"', 'title = "Two lots for tests'),
-        ("tender-syntax", "tender.toml:5", 'title = "Two lots for tests'),
-    ),
-    tender_case(
-        "tender key unknown",
-        tender_with("load_factor = 0.5", "load_faktor = 0.5"),
-        ("tender-key-missing", "tender.toml:30", None),
-        ("tender-key-unknown", "tender.toml:31", "0.5"),
-    ),
-    tender_case(
-        "tender key in the wrong table",
-        tender_with("[exchange]", "timing = 'mid-year'\n[exchange]"),
-        ("tender-key-unknown", "tender.toml:14", "mid-year"),
-    ),
-    tender_case(
-        "tender key missing", tender_with("quantity = 10\n", ""), ("tender-key-missing", "tender.toml:36", None)
-    ),
-    tender_case(
-        "tender number in quotes",
-        tender_with("load = 660", 'load = "660"'),
-        ("tender-value", "tender.toml:45", "660"),
-    ),
-    tender_case(
-        "tender number of the wrong type",
-        tender_with("load = 660", "load = true"),
-        ("tender-value", "tender.toml:45", "true"),
-    ),
-    tender_case(
-        "tender number infinite", tender_with("load = 660", "load = inf"), ("tender-value", "tender.toml:45", "inf")
-    ),
-    tender_case(
-        "tender number out of bounds",
-        tender_with("load = 660", "load = -660"),
-        ("tender-value", "tender.toml:45", "-660"),
-    ),
-    tender_case(
-        "economics unknown",
-        tender_with('study]\neconomics = "board"', 'study]\neconomics = "bord"'),
-        ("tender-value", "tender.toml:49", "bord"),
-    ),
-    tender_case(
-        "rates and derivation both",
-        tender_with("[lot.study]", "[lot.derivation]"),
-        ("tender-conflict", "tender.toml:48", None),
-    ),
-    tender_case(
-        "rates and derivation neither",
-        tender_with('[lot.rates]\nno_load = 11000\nload = 660\nper = "kW"\n', ""),
-        ("tender-key-missing", "tender.toml:36", None),
-    ),
-    tender_case(
-        "lot twice",
-        tender_with('id = "2"', 'id = "1"'),
-        ("tender-conflict", "tender.toml:53", "1"),
-        *(("lot-unknown", f"bids/offers.csv:{line}[Lot]", "2") for line in (3, 5)),
-    ),
-    tender_case(
-        "tender from the future",
-        tender_with("format_version = 1", "format_version = 2"),
-        ("tender-value", "tender.toml:1", "2"),
     ),
 )
 

@@ -1,4 +1,4 @@
-"""What files hold on purpose or by accident: formulas and markup in texts, numbers of all kinds, sizes, damaged parts."""
+"""What files hold on purpose or by accident: formulas and markup, numbers of all kinds, sizes, damaged parts."""
 
 from __future__ import annotations
 
@@ -55,6 +55,8 @@ TEXTS = (
     "1;DROP TABLE",
 )
 DATA = workbook_bytes()
+SPREADSHEET = "http://schemas.openxmlformats.org/spreadsheetml/2006/main"
+DAMAGED = (b"", b"<x/>", b"\xff\xfe", b"<a><b></a>", b"<!DOCTYPE x [<!ENTITY a 'b'>]><x>&a;</x>")
 
 
 def offers_with(folder: Path, text: str, name: str) -> tuple[Offer, ...]:
@@ -106,9 +108,9 @@ def test_read_bids__white_space_around_a_text(text: str, tmp_path: Path) -> None
 def test_read_bids__formula_with_a_computed_text(tmp_path: Path) -> None:
     """A formula in a column of words counts by its computed value; its own text is nowhere."""
     made = workbook_bytes({"Offers": (HEADER, ("1", None, "Alder", "NCU", 4000, 0.12, 1.2, 30, None, "=DDE(1)"))})
-    data = with_sheet_xml(made, "<f>DDE(1)</f><v />", "<f>DDE(1)</f><v>home</v>")
-    data = data if data != made else with_sheet_xml(made, "<f>DDE(1)</f><v></v>", "<f>DDE(1)</f><v>home</v>")
+    data = with_sheet_xml(made, '<c r="J2"><f>DDE(1)</f><v /></c>', '<c r="J2" t="str"><f>DDE(1)</f><v>home</v></c>')
     (offer,), _ = bids_of(tmp_path, "a.xlsx", data, valid_tender(tmp_path, FULL))
+    assert str(offer.terms.origin) == "home"
     assert "DDE" not in repr(offer)
 
 
@@ -195,18 +197,16 @@ def test_read_workbook__shared_text_in_many_cells() -> None:
     """A long text that a hundred thousand cells share is counted in each of them."""
     cells = "".join(f'<row r="{row}"><c r="A{row}" t="s"><v>0</v></c></row>' for row in range(6, 2000))
     data = with_sheet_xml(DATA, "</sheetData>", f"{cells}</sheetData>")
-    data = with_member(
-        data, "xl/sharedStrings.xml", lambda old: old.replace(b"<t>Lot</t>", f"<t>{'x' * 30_000}</t>".encode())
-    )
+    others = "<si><t>x</t></si>" * 50
+    shared = f'<sst xmlns="{SPREADSHEET}"><si><t>{"x" * 30_000}</t></si>{others}</sst>'
+    data = with_member(data, "xl/sharedStrings.xml", lambda _: shared.encode())
     found = read_workbook(data, "a.xlsx")
     assert isinstance(found, Finding)
     assert (found.kind, found.rule) == ("file-too-large", "must hold at most 16,000,000 characters in its cells")
 
 
 @pytest.mark.parametrize("part", ["xl/styles.xml", "xl/sharedStrings.xml", "xl/workbook.xml", "[Content_Types].xml"])
-@pytest.mark.parametrize(
-    "content", [b"", b"<x/>", b"\xff\xfe", b"<a><b></a>", b"<!DOCTYPE x [<!ENTITY a 'b'>]><x>&a;</x>"]
-)
+@pytest.mark.parametrize("content", DAMAGED)
 def test_read_workbook__damaged_parts(part: str, content: bytes) -> None:
     """Whatever stands in a part of a workbook, it is read or refused with one finding."""
     found = read_workbook(with_member(DATA, part, lambda _: content), "a.xlsx")

@@ -172,6 +172,16 @@ def test_read_bids__terms_of_a_workbook(tmp_path: Path) -> None:
     ]
 
 
+def test_read_bids__total_without_unit_price(tmp_path: Path) -> None:
+    """A row that names a lot and states a total alone is an offer in which everything else is missing."""
+    header = "Lot,Bidder,Unit price [NCU],Total price,No-load loss [kW],Load loss [kW]\n"
+    rows = "1,Alder,,40000,,\nTotal,,,40000,,\n"
+    (offer,), findings = bids_of(tmp_path, "a.csv", header + rows, valid_tender(tmp_path, COUNTED))
+    assert stated(offer, "total_price") == 40000
+    missing = [(finding.kind, finding.place.line if finding.place else None) for finding in findings]
+    assert missing == [*[("value-missing", 2)] * 3, ("row-not-read", 3)]
+
+
 # Payments
 
 

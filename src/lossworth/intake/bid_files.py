@@ -12,14 +12,16 @@ from ..findings import Finding, Place, any_stops
 from ..records.bid import Offer
 from ..records.tender import Tender
 from .bid_csv import LARGEST_CSV, read_csv
-from .bid_workbook import read_workbook
+from .bid_identities import check_identities
+from .bid_workbook import Book, read_workbook
 from .cells import Marks
 from .columns import COLUMNS
 from .file_bytes import bounded_bytes
 from .labels import read_labels
 from .linked_files import linked_names
-from .offer_rows import Table, read_offers
+from .offer_rows import Table, read_offers, rows_with_figures
 from .sheet import Row, Sheet
+from .sheet_looks import check_looks
 from .table_header import find_header, is_header
 from .tender_folder import BIDS, InputFile
 from .workbook_guard import LARGEST_WORKBOOK
@@ -64,7 +66,8 @@ def read_bids(
         findings += about_file
     if not offers and not any_stops(findings):
         findings.append(Finding("no-offers", "bids", "must hold at least one bid file", Place(BIDS)))
-    return tuple(offers), (*findings, *_given_twice(offers))
+    # a label that two offers of one lot share is told once
+    return tuple(offers), tuple(dict.fromkeys((*findings, *check_identities(offers))))
 
 
 def _read_file(file: InputFile, tender: Tender | None) -> tuple[Sequence[Offer], Sequence[Finding]]:
@@ -84,10 +87,17 @@ def _read_workbook_file(file: InputFile, tender: Tender | None) -> tuple[Sequenc
     data = bounded_bytes(file.path, file.shown_as, LARGEST_WORKBOOK)
     if isinstance(data, Finding):
         return (), [data]
-    sheets = read_workbook(data, file.shown_as)
-    if isinstance(sheets, Finding):
-        return (), [sheets]
-    return _read_sheets(file, sheets, tender)
+    book = read_workbook(data, file.shown_as)
+    if isinstance(book, Finding):
+        return (), [book]
+    offers, findings = _read_sheets(file, book.sheets, tender)
+    return offers, (*_links(file, book), *findings)
+
+
+def _links(file: InputFile, book: Book) -> Iterator[Finding]:
+    if book.has_links:
+        rule = "leads to other files or data; what it took from them counts as it stands, and nothing is followed"
+        yield Finding("workbook-links", "workbook", rule, Place(file.shown_as))
 
 
 def _read_csv_file(file: InputFile, tender: Tender | None) -> tuple[Sequence[Offer], Sequence[Finding]]:
@@ -121,13 +131,18 @@ def _read_sheets(
     for part in parts:
         if part.header is None:
             continue
-        header, about_header = find_header(part.sheet, part.header)
+        header, about_header = find_header(part.sheet, part.header, _items(tender))
         table = Table(part.sheet, header, part.below, labels, _marks(file, tender), tender)
         of_table, about_rows = read_offers(table)
         offers += of_table
-        findings += (*about_header, *about_rows)
+        findings += (*about_header, *check_looks(part.sheet, header, rows_with_figures(table)), *about_rows)
     findings += _nothing_found(file, parts, rows_are_missing=rows_are_missing)
     return offers, findings
+
+
+def _items(tender: Tender | None) -> tuple[str, ...] | None:
+    """Names of the further items of all lots."""
+    return None if tender is None else tuple(item.name.value for lot in tender.lots for item in lot.items)
 
 
 def _divided(sheet: Sheet) -> _Parts:
@@ -184,13 +199,3 @@ def _unused_decimal_marks(files: Sequence[InputFile], tender: Tender | None) -> 
             yield Finding(
                 "tender-key-not-used", key, "names no file of this run", Place(tender.rules.place.file, key=key)
             )
-
-
-def _given_twice(offers: Sequence[Offer]) -> Iterator[Finding]:
-    first: dict[tuple[str, str], Offer] = {}
-    for offer in offers:
-        who = (unicodedata.normalize("NFKC", offer.bidder.value).casefold(), offer.lot.value.casefold())
-        before = first.setdefault(who, offer)
-        if before is not offer:
-            rule = f"must be given once; {before.place} has one too"
-            yield Finding("offer-twice", "offer", rule, offer.place, None, offer.bidder.value, offer.lot.value)

@@ -15,8 +15,14 @@ __all__ = ["BLANK", "Cell", "Content", "Marks", "NoNumber", "collapsed", "number
 
 #: Space, no-break space, thin space, narrow no-break space: all group thousands.
 _GROUPING_SPACES = " \u00a0\u2009\u202f"
-_MINUS = "\u2212"
-_APOSTROPHE = "\u2019"
+#: Hyphens, dashes and minus signs: all are a minus before a number. An apostrophe may be typographic.
+_SIGNS = str.maketrans(dict.fromkeys("\u2010\u2011\u2012\u2013\u2014\u2212\ufe63\uff0d", "-") | {"\u2019": "'"})
+#: Characters without width, which nobody sees at the ends of a cell.
+_INVISIBLE = "\u00ad\u200b\u200c\u200d\u200e\u200f\u2060\ufeff"
+_AROUND = _INVISIBLE + "".join(chr(code) for code in range(0x3001) if chr(code).isspace())
+#: A number that means the same by every declaration but that of a comma for its point, and is far inside all bounds.
+_PLAIN = re.compile(r"[0-9]+(?:\.[0-9]+)?")
+_LONGEST_PLAIN = 12
 
 
 class Content(Enum):
@@ -105,9 +111,11 @@ def text_cell(text: str) -> Cell:
     Returns
     -------
     Cell
-        With the spaces around taken off.
+        With the spaces around taken off, and what has no width.
     """
     text = text.strip()
+    if not text.isascii():
+        text = text.strip(_AROUND)
     return Cell(Content.TEXT, text) if text else BLANK
 
 
@@ -145,6 +153,8 @@ def number_in(cell: Cell, marks: Sequence[Marks], unit: str) -> Decimal | NoNumb
         The number in the unit of the column, or why there is none.
     """
     if cell.content is Content.TEXT:
+        if len(cell.text) <= _LONGEST_PLAIN and marks[0].decimal == "." and _PLAIN.fullmatch(cell.text):
+            return Decimal(cell.text)
         found = _number_of_text(cell.text, marks, unit)
     elif cell.content is Content.NUMBER or (cell.content is Content.PERCENTAGE and unit == "%"):
         found = cell.number
@@ -174,7 +184,7 @@ _OTHER_CONTENT = {
 
 
 def _number_of_text(text: str, marks: Sequence[Marks], unit: str) -> Decimal | None:
-    text = text.replace(_MINUS, "-").replace(_APOSTROPHE, "'").strip()
+    text = text.translate(_SIGNS).strip()
     if unit == "%":
         text = text.removesuffix("%").rstrip()
     return next((number for each in marks if (number := _parsed(text, each)) is not None), None)

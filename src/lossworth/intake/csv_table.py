@@ -13,12 +13,14 @@ from .cells import text_cell
 from .file_bytes import MEGABYTE, utf8_text
 from .sheet import MOST_COLUMNS, MOST_ROWS, Row, Sheet
 
-__all__ = ["LARGEST_CSV", "CsvKind", "read_csv_table"]
+__all__ = ["LARGEST_CSV", "LONGEST_LINE", "CsvKind", "read_csv_table"]
 
 #: Greatest size of a csv file. [byte]
 LARGEST_CSV = 16 * MEGABYTE
 
 _MARKS: tuple[Literal[",", ";"], ...] = (";", ",")
+#: Bound of one line, which no row of so few columns needs. [character]
+LONGEST_LINE = 256 * 1024
 #: A decimal comma without quotes makes every row too long; ten of them say it.
 _MOST_WRONG_ROWS = 10
 
@@ -67,7 +69,10 @@ def read_csv_table(data: bytes, shown_as: str, kind: CsvKind) -> tuple[Sheet | N
     text = utf8_text(data, shown_as)
     if isinstance(text, Finding):
         return None, (text,)
-    mark = _separator(text, shown_as, kind)
+    try:
+        mark = _separator(text, shown_as, kind)
+    except OverflowError as error:
+        return None, (Finding("file-too-large", "file", str(error), Place(shown_as)),)
     if isinstance(mark, Finding):
         return None, (mark,)
     rows: list[Row] = []
@@ -82,7 +87,7 @@ def read_csv_table(data: bytes, shown_as: str, kind: CsvKind) -> tuple[Sheet | N
             if wrong <= _MOST_WRONG_ROWS + 1:
                 findings.append(_wrong_length(rows[0], row, shown_as, mark))
     except csv.Error as error:
-        rule = f"must have every quotation mark closed ({error})"
+        rule = f"must have every quotation mark closed, and no cell beyond all measure ({error})"
         findings.append(Finding("file-unreadable", "file", rule, Place(shown_as, line=_last_line(rows) + 1)))
     except OverflowError as error:
         findings.append(Finding("file-too-large", "file", str(error), Place(shown_as)))
@@ -90,7 +95,7 @@ def read_csv_table(data: bytes, shown_as: str, kind: CsvKind) -> tuple[Sheet | N
         last = findings[_MOST_WRONG_ROWS]
         rule = f"{last.rule}; so in {wrong - _MOST_WRONG_ROWS:,} rows from here on"
         findings[_MOST_WRONG_ROWS] = replace(last, rule=rule)
-    return Sheet(shown_as, None, tuple(rows)), tuple(findings)
+    return (Sheet(shown_as, None, tuple(rows)) if rows else None), tuple(findings)
 
 
 def _separator(text: str, shown_as: str, kind: CsvKind) -> Literal[",", ";"] | Finding:
@@ -107,29 +112,38 @@ def _separator(text: str, shown_as: str, kind: CsvKind) -> Literal[",", ";"] | F
 
 
 def _header(text: str, mark: str) -> list[str]:
+    """Texts of the first record that is not blank, however many; none where the quotation marks are wrong."""
     try:
-        first = next(_records(text, mark), None)
+        records = csv.reader(_lines(text), delimiter=mark, strict=True)
+        return next((texts for record in records if any(texts := [cell.strip() for cell in record])), [])
     except csv.Error:
         return []
-    return [cell.text for cell in first.cells] if first else []
 
 
 def _records(text: str, mark: str) -> Iterator[Row]:
-    reader = csv.reader(io.StringIO(text, newline=""), delimiter=mark, strict=True)
+    reader = csv.reader(_lines(text), delimiter=mark, strict=True)
     line = 1
     for record in reader:
-        row = Row(line, tuple(text_cell(cell) for cell in record))
+        if len(record) > MOST_COLUMNS:  # before a cell is made of each
+            raise OverflowError(f"must have at most {MOST_COLUMNS} columns; line {reader.line_num:,} has more")
+        row = Row(line, tuple(map(text_cell, record)))
         line = reader.line_num + 1
         if not row.is_blank:
             yield row
+
+
+def _lines(text: str) -> Iterator[str]:
+    """Lines of a bounded length, before they are taken apart."""
+    for line in io.StringIO(text, newline=""):
+        if len(line) > LONGEST_LINE:
+            raise OverflowError(f"must have at most {LONGEST_LINE:,} characters in a line")
+        yield line
 
 
 def _bounded(rows: Iterator[Row], most_rows: int) -> Iterator[Row]:
     for number, row in enumerate(rows):
         if number > most_rows:
             raise OverflowError(f"must have at most {most_rows:,} rows")
-        if len(row.cells) > MOST_COLUMNS:
-            raise OverflowError(f"must have at most {MOST_COLUMNS} columns")
         yield row
 
 

@@ -6,9 +6,11 @@ import re
 
 from .cells import collapsed
 
-__all__ = ["in_brackets", "name_of", "plain"]
+__all__ = ["folded", "in_brackets", "name_of", "plain"]
 
-_BRACKETS = re.compile(r"[\[(]([^\[\]()]*)[\])]")
+#: Square or round brackets, and in them at most one round pair more: `[dB(A)]`.
+_INSIDE = r"[^\[\]()]*(?:\([^\[\]()]*\)[^\[\]()]*)?"
+_BRACKETS = re.compile(rf"\[(?P<square>{_INSIDE})\]|\((?P<round>{_INSIDE})\)")
 
 
 def name_of(text: str) -> str:
@@ -56,4 +58,21 @@ def in_brackets(text: str) -> list[str]:
     list of str
         In their order, without spaces around, empty ones included.
     """
-    return [group.strip() for group in _BRACKETS.findall(collapsed(text))]
+    found = _BRACKETS.finditer(collapsed(text))
+    return [(match["square"] if match["round"] is None else match["round"]).strip() for match in found]
+
+
+def folded(name: str) -> str:
+    """Name that a buyer chooses, without regard to capitals and to the number of blanks.
+
+    Parameters
+    ----------
+    name : str
+        Of an item, a liquid, a group.
+
+    Returns
+    -------
+    str
+        The form in which such names are compared.
+    """
+    return " ".join(name.casefold().split())

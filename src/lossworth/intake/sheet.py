@@ -7,7 +7,7 @@ from dataclasses import dataclass
 from ..findings import Place
 from .cells import BLANK, Cell
 
-__all__ = ["MOST_CELLS", "MOST_COLUMNS", "MOST_ROWS", "Row", "Sheet", "column_letters"]
+__all__ = ["MOST_CELLS", "MOST_COLUMNS", "MOST_ROWS", "NO_LOOKS", "Area", "Looks", "Row", "Sheet", "column_letters"]
 
 #: Bounds of one sheet or table; no tender has more lots and bidders.
 MOST_ROWS = 20_000
@@ -42,6 +42,50 @@ class Row:
 
 
 @dataclass(frozen=True, slots=True)
+class Area:
+    """Some merged cells.
+
+    Parameters
+    ----------
+    top, bottom : int
+        First and last row, from 1.
+    left, right : int
+        First and last column, from 0.
+    """
+
+    top: int
+    left: int
+    bottom: int
+    right: int
+
+    def __str__(self) -> str:
+        return f"{column_letters(self.left)}{self.top}:{column_letters(self.right)}{self.bottom}"
+
+
+@dataclass(frozen=True, slots=True)
+class Looks:
+    """What a worksheet hides or merges.
+
+    Parameters
+    ----------
+    is_hidden : bool
+        Whether the worksheet itself is hidden.
+    hidden_rows, hidden_columns : frozenset of int
+        Rows, from 1, and columns, from 0.
+    merged : tuple of Area
+        Merged cells.
+    """
+
+    is_hidden: bool = False
+    hidden_rows: frozenset[int] = frozenset()
+    hidden_columns: frozenset[int] = frozenset()
+    merged: tuple[Area, ...] = ()
+
+
+NO_LOOKS = Looks()
+
+
+@dataclass(frozen=True, slots=True)
 class Sheet:
     """A worksheet, or the one table of a text file.
 
@@ -53,11 +97,14 @@ class Sheet:
         Name of the worksheet; None for a text file.
     rows : tuple of Row
         Rows that are not blank, in their order.
+    looks : Looks
+        What a worksheet hides or merges.
     """
 
     file: str
     name: str | None
     rows: tuple[Row, ...]
+    looks: Looks = NO_LOOKS
 
     @property
     def place(self) -> Place:
@@ -75,8 +122,11 @@ class Sheet:
         """Place of a cell; the column of a text file goes by the text of its header, the first row."""
         if self.name is not None:
             return Place(self.file, sheet=self.name, cell=f"{column_letters(column)}{row.number}")
-        header = self.rows[0].cell(column).text or f"column {column + 1}"
-        return Place(self.file, line=row.number, column=header)
+        return Place(self.file, line=row.number, column=self.heading(column))
+
+    def heading(self, column: int) -> str:
+        """Text of the header of a column of a text file, which is its first row."""
+        return self.rows[0].cell(column).text or f"column {column + 1}"
 
 
 def column_letters(column: int) -> str:

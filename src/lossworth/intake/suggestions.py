@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterable
 from difflib import get_close_matches
 
-__all__ = ["did_you_mean", "nearest"]
+__all__ = ["did_you_mean", "nearest", "one_of"]
 
 _LONGEST = 80  # the comparison takes time by the square of the length
 
@@ -47,3 +47,19 @@ def did_you_mean(word: str, known: Iterable[str]) -> str:
     """
     near = nearest(word, known)
     return f'Did you mean "{near}"?' if near else ""
+
+
+def one_of(words: Iterable[str]) -> str:
+    """Words of which one is allowed.
+
+    Parameters
+    ----------
+    words : iterable of str
+        In their order.
+
+    Returns
+    -------
+    str
+        ``'"kW" or "W"'``.
+    """
+    return " or ".join(f'"{word}"' for word in words)

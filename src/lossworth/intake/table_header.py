@@ -2,47 +2,22 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Iterator, Mapping
+from collections.abc import Collection, Iterable, Iterator, Mapping
 from dataclasses import dataclass
-from decimal import Decimal
 from types import MappingProxyType
 
 from ..findings import Finding
-from ..money import is_currency_code
-from .cells import collapsed
-from .columns import COLUMNS, UNIT_SPELLINGS, Column
-from .header_text import in_brackets, name_of, plain
+from ..records.bid_columns import ITEM_HEADING
+from .cells import Content
+from .columns import COLUMNS
+from .header_text import name_of
+from .heading import Heading, heading_of
 from .sheet import Row, Sheet
 from .suggestions import nearest
 
-__all__ = ["Header", "Heading", "find_header", "is_header", "recognized_columns"]
+__all__ = ["Header", "find_header", "is_header", "recognized_columns"]
 
 _TELLING = ("unit_price", "no_load_loss_kw", "load_loss_kw")
-
-
-@dataclass(frozen=True, slots=True)
-class Heading:
-    """One header cell that is understood.
-
-    Parameters
-    ----------
-    column : Column
-        What it means.
-    at : int
-        Its column in the sheet, from 0.
-    text : str
-        As it stands.
-    unit : str
-        As it stands, or by its usual spelling; the currency code of a price; empty where there is none.
-    times : Decimal or None
-        Factor to the unit of the field; None where the unit is missing or not known, so that no value can be taken.
-    """
-
-    column: Column
-    at: int
-    text: str
-    unit: str
-    times: Decimal | None
 
 
 @dataclass(frozen=True, slots=True)
@@ -77,7 +52,7 @@ def is_header(row: Row) -> bool:
     bool
         True if two columns are known, one of them the price or a loss.
     """
-    known = recognized_columns(cell.text for cell in row.cells)
+    known = recognized_columns(cell.text for cell in row.cells if cell.content is Content.TEXT)
     return len(known) >= 2 and any(field in known for field in _TELLING)
 
 
@@ -94,10 +69,10 @@ def recognized_columns(headers: Iterable[str]) -> set[str]:
     set of str
         Fields, each once.
     """
-    return {found.column.field for text in headers if (found := _heading(text, 0)) is not None}
+    return {found.column.field for text in headers if (found := heading_of(text)) is not None}
 
 
-def find_header(sheet: Sheet, row: Row) -> tuple[Header, tuple[Finding, ...]]:
+def find_header(sheet: Sheet, row: Row, items: Collection[str] | None = None) -> tuple[Header, tuple[Finding, ...]]:
     """Header of a table of offers with everything that is wrong with it.
 
     Parameters
@@ -106,6 +81,8 @@ def find_header(sheet: Sheet, row: Row) -> tuple[Header, tuple[Finding, ...]]:
         The sheet, for places.
     row : Row
         The header row.
+    items : collection of str, optional
+        Names of the further items of all lots; None where the tender is not known, and then any name will do.
 
     Returns
     -------
@@ -117,11 +94,11 @@ def find_header(sheet: Sheet, row: Row) -> tuple[Header, tuple[Finding, ...]]:
     found: dict[str, list[Heading]] = {}
     unread: list[Finding] = []
     for at, cell in enumerate(row.cells):
-        heading = _heading(cell.text, at)
+        heading = heading_of(cell.text, at, items)
         if heading is not None:
             found.setdefault(heading.column.field, []).append(heading)
         elif not cell.is_blank:
-            unread.append(_not_read(sheet, row, at, cell.text))
+            unread.append(_not_read(sheet, row, at, cell.text, items or ()))
     twice = {field: headings for field, headings in found.items() if len(headings) > 1}
     once = {field: headings[0] for field, headings in found.items() if len(headings) == 1}
     findings = [
@@ -134,7 +111,7 @@ def find_header(sheet: Sheet, row: Row) -> tuple[Header, tuple[Finding, ...]]:
 
 
 def _missing(sheet: Sheet, row: Row, found: Mapping[str, object]) -> Iterator[Finding]:
-    headers = [cell.text for cell in row.cells if not cell.is_blank and _heading(cell.text, 0) is None]
+    headers = [cell.text for cell in row.cells if not cell.is_blank and heading_of(cell.text) is None]
     for column in COLUMNS:
         if column.is_needed and column.field not in found:
             folded = {name_of(header): header for header in headers}
@@ -155,7 +132,7 @@ def _unit_findings(sheet: Sheet, row: Row, headings: Iterable[Heading]) -> Itera
         if heading.times is not None:
             continue
         column, place = heading.column, sheet.place_of(row, heading.at)
-        if column.field == "unit_price":
+        if column.is_price:
             rule = "must have a currency code of three capital letters for its unit, or none"
         else:
             rule = f"must state its unit: {' or '.join(column.units)}"
@@ -163,72 +140,10 @@ def _unit_findings(sheet: Sheet, row: Row, headings: Iterable[Heading]) -> Itera
         yield Finding("column-unit", f"column {column.name}", rule, place, got=heading.text, fix=fix)
 
 
-def _not_read(sheet: Sheet, row: Row, at: int, text: str) -> Finding:
-    near = nearest(name_of(text), (column.name for column in COLUMNS))
+def _not_read(sheet: Sheet, row: Row, at: int, text: str, items: Collection[str]) -> Finding:
+    names = (*(column.name for column in COLUMNS), *(f"{ITEM_HEADING}{item}" for item in items))
+    near = nearest(name_of(text), names) or nearest(text.partition("[")[0], names)
     fix = f'Did the bidder mean "{near}"?' if near else ""
     return Finding(
         "column-not-read", "column", "is not used by the evaluation", sheet.place_of(row, at), got=text, fix=fix
     )
-
-
-def _heading(text: str, at: int) -> Heading | None:
-    """Meaning and unit of a header; None where it is not one of ours."""
-    text = collapsed(text)
-    machine = _machine_heading(text, at)
-    if machine is not None:
-        return machine
-    name = name_of(text)
-    inside = in_brackets(text)
-    column = _COLUMN_BY_NAME.get(name)
-    if column is None:
-        return None
-    return _with_unit(column, at, text, [group for group in inside if group and plain(group) not in column.symbols])
-
-
-def _names(column: Column) -> set[str]:
-    names = {plain(column.name), *(plain(other) for other in column.others)}
-    beside = {f"{name} {symbol}" for name in names for symbol in column.symbols}
-    return names | beside | set(column.symbols)
-
-
-def _machine_heading(text: str, at: int) -> Heading | None:
-    """``no_load_loss_w``: the field's name with its unit, for tables that other programs write."""
-    folded = text.casefold().removeprefix("guaranteed_")
-    if "_" not in folded:
-        return None
-    endings = {
-        "_kw": "kW",
-        "_w": "W",
-        "_kva": "kVA",
-        "_mva": "MVA",
-        "_percent": "%",
-        "_pu": "pu",
-        "_weeks": "weeks",
-        "_c": "°C",
-    }
-    for column in COLUMNS:
-        if folded in (column.machine_name, column.field) and not column.units:
-            return _with_unit(column, at, text, [])
-        for ending, unit in endings.items():
-            if folded == column.machine_name + ending and unit in column.units:
-                return Heading(column, at, text, unit, column.units[unit])
-        if folded == column.machine_name:
-            return _with_unit(column, at, text, [])
-    return None
-
-
-def _with_unit(column: Column, at: int, text: str, stated: list[str]) -> Heading:
-    unit = UNIT_SPELLINGS.get(stated[0], stated[0]) if len(stated) == 1 else ""
-    if column.field == "unit_price":
-        fits = not stated or is_currency_code(unit)
-        return Heading(column, at, text, unit if fits else "", Decimal(1) if fits else None)
-    if not column.units:
-        return Heading(column, at, text, "", Decimal(1))
-    if not stated and not column.needs_unit:
-        return Heading(column, at, text, "", Decimal(1))
-    return Heading(column, at, text, unit, column.units.get(unit))
-
-
-_COLUMN_BY_NAME: Mapping[str, Column] = MappingProxyType(
-    {name: column for column in COLUMNS for name in sorted(_names(column))}
-)

@@ -5,10 +5,14 @@ from __future__ import annotations
 from collections.abc import Iterator
 
 from ..findings import Finding
+from .check_commercial import COMMERCIAL_CHECKS
 from .check_economics import ECONOMICS_CHECKS
 from .check_loading import LOADING_CHECKS
+from .check_lot_terms import LOT_TERM_CHECKS
 from .check_lots import LOT_CHECKS
 from .check_pairs import PAIR_CHECKS
+from .check_regulation import REGULATION_CHECKS
+from .check_rules import RULE_CHECKS
 from .tender_draft import Check, Draft
 
 __all__ = ["CHECKS"]
@@ -33,7 +37,11 @@ def check_number_marks(draft: Draft) -> Iterator[Finding]:
 
 
 CHECKS: tuple[Check, ...] = (
+    *RULE_CHECKS,
+    *COMMERCIAL_CHECKS,
     *LOT_CHECKS,
+    *LOT_TERM_CHECKS,
+    *REGULATION_CHECKS,
     *ECONOMICS_CHECKS,
     *LOADING_CHECKS,
     *PAIR_CHECKS,

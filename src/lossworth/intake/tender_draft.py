@@ -69,6 +69,11 @@ class DraftTable:
             return value.value
         return value if isinstance(value, str) else None
 
+    def texts(self, name: str) -> tuple[str, ...]:
+        """Values of a list of texts; empty where there is none that can be read."""
+        values = self.values.get(name)
+        return tuple(value for value in values if isinstance(value, str)) if isinstance(values, tuple) else ()
+
     def has(self, name: str) -> bool:
         """Whether the file gives the field, readable or not."""
         return name in self.given
@@ -132,6 +137,21 @@ class DraftLot:
         return self.own.one("loss_basis")
 
     @property
+    def regulation(self) -> DraftTable | None:
+        """Regulation whose limits hold."""
+        return self.own.one("regulation")
+
+    @property
+    def items(self) -> tuple[DraftTable, ...]:
+        """Further items that are priced apart."""
+        return self.own.inside.get("item", ())
+
+    @property
+    def site_costs(self) -> tuple[DraftTable, ...]:
+        """Costs at the site that offers cause."""
+        return self.own.inside.get("site_cost", ())
+
+    @property
     def derivations(self) -> tuple[DraftTable, ...]:
         """The announced derivation and the planner's study, as far as there are any."""
         return tuple(table for table in (self.derivation, self.study) if table is not None)
@@ -149,6 +169,8 @@ class Draft:
         None where the file has no such table.
     exchange_rates, decimal_mark_of : DraftTable or None
         Tables with names for keys.
+    commercial : mapping of str to DraftTable
+        Tables that level prices, by name: delivery, taxes, payment, preference, award; those that the file has.
     economics, loading : mapping of str to DraftTable
         By name.
     lots : tuple of DraftLot
@@ -166,6 +188,7 @@ class Draft:
     decimal_mark_of: DraftTable | None
     exchange: DraftTable | None
     exchange_rates: DraftTable | None
+    commercial: Mapping[str, DraftTable]
     economics: Mapping[str, DraftTable]
     loading: Mapping[str, DraftTable]
     lots: tuple[DraftLot, ...]
@@ -176,7 +199,8 @@ class Draft:
         """All tables."""
         single = (self.identity, self.rules, self.bid_files, self.decimal_mark_of, self.exchange, self.exchange_rates)
         yield from (table for table in single if table is not None)
-        for table in (*self.economics.values(), *self.loading.values(), *(lot.own for lot in self.lots)):
+        lots = (lot.own for lot in self.lots)
+        for table in (*self.commercial.values(), *self.economics.values(), *self.loading.values(), *lots):
             yield from table.tables()
 
 

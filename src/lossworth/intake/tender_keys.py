@@ -7,8 +7,11 @@ from dataclasses import dataclass
 from decimal import Decimal
 from enum import Enum, auto
 from types import MappingProxyType
+from typing import get_args
 
 from ..money import RoundingMode
+from ..records.commercial import Incoterm
+from ..records.rules import RULE_KINDS
 from ..records.tender import (
     CoolingValuation,
     Method,
@@ -29,6 +32,7 @@ class Reads(Enum):
     """What a value must be."""
 
     NUMBER = auto()
+    ONE_OF_NUMBERS = auto()  # a whole number that the record holds as such
     POWER_OF_TEN = auto()
     NUMBERS = auto()
     TEXT = auto()
@@ -61,6 +65,8 @@ class Key:
         Factor to the unit of the field.
     words : tuple of str
         The texts allowed.
+    numbers : tuple of int
+        The whole numbers allowed.
     for_reading : bool
         Whether it says how a file is to be read, and fills no field of a record.
     """
@@ -71,6 +77,7 @@ class Key:
     field: str = ""
     times: Decimal = Decimal(1)
     words: tuple[str, ...] = ()
+    numbers: tuple[int, ...] = ()
     for_reading: bool = False
 
     @property
@@ -119,6 +126,14 @@ _DERIVATION = (
     Key("round_rates_to", Reads.POWER_OF_TEN, "{currency}/kW"),
 )
 _TERMS = ("real", "nominal")
+_PER_HUNDRED = Decimal("0.01")
+#: Rules of which several settings stand in an order.
+_ORDERS = ("tie_order",)
+#: One key for each rule on which regimes disagree.
+_ANNOUNCED = tuple(
+    Key(kind.key, Reads.WORDS if kind.key in _ORDERS else Reads.WORD, words=tuple(kind.sentences))
+    for kind in RULE_KINDS
+)
 
 #: By table; a table of the file that others stand in has a dot: ``lot.rates``.
 TABLES: Mapping[str, tuple[Key, ...]] = MappingProxyType(
@@ -135,9 +150,27 @@ TABLES: Mapping[str, tuple[Key, ...]] = MappingProxyType(
             Key("round_money_to", Reads.POWER_OF_TEN, "{currency}"),
             _word("rounding", *RoundingMode),
             _word("rounding_applies_to", *RoundingPoint),
+            _text("profile"),
+            *_ANNOUNCED,
+            Key("exchange_rate_days_before", unit="days"),
+            Key("loss_tolerance_percent", unit="%"),
         ),
         "bids": (_word("decimal_mark", ".", ","), _word("thousands_mark", "", ".", ",", "'", " ")),
         "exchange": (_text("source"), _text("kind"), Key("date", Reads.DATE), _text("evidence")),
+        "delivery": (Key("point", Reads.TEXT, field="delivered_point"),),
+        "delivery.level": (
+            _word("term", *get_args(Incoterm)),
+            Key("percent_of_price", unit="%"),
+            Key("amount_per_unit", unit="{currency}"),
+        ),
+        "taxes": (Key("rate_percent", unit="%"),),
+        "payment": (Key("interest_rate_percent", unit="%/year"),),
+        "payment.part": (
+            Key("share_percent", unit="%", field="share", times=_PER_HUNDRED),
+            Key("weeks_after_order", unit="weeks"),
+        ),
+        "preference": (_text("group"), Key("margin_percent", unit="%")),
+        "award": (Key("planned", Reads.DATE, field="planned_award"),),
         "economics": (
             Key("energy_price_per_kwh", unit="{currency}/kWh"),
             Key("energy_price_by_year_per_kwh", Reads.NUMBERS, unit="{currency}/kWh"),
@@ -206,6 +239,13 @@ TABLES: Mapping[str, tuple[Key, ...]] = MappingProxyType(
             Key("impedance_percent", unit="%"),
             Key("impedance_tolerance_percentage_points", unit="percentage points"),
             Key("latest_delivery_weeks", unit="weeks"),
+            Key("delivery_without_adder_weeks", unit="weeks"),
+            Key("delivery_adder_percent_per_week", unit="%/week"),
+            Key("delivery_adder_per_week", unit="{currency}/week"),
+            Key("maximum_sound_level_db", unit="dB"),
+            Key("accepted_liquids", Reads.NAMES),
+            Key("pcb_free_required", Reads.FLAG),
+            Key("estimated_unit_price", unit="{currency}"),
             _word("cooling_valuation", *CoolingValuation),
         ),
         "lot.rates": (
@@ -229,18 +269,42 @@ TABLES: Mapping[str, tuple[Key, ...]] = MappingProxyType(
             _word("conductor", "copper", "aluminum"),
             Key("convert", Reads.WORDS, words=("rating", "temperature", "total loss")),
         ),
+        "lot.regulation": (
+            _word("regulation", "EU 548/2014", "US 10 CFR 431"),
+            _text("equipment"),
+            Key("tier", Reads.ONE_OF_NUMBERS, numbers=(1, 2)),
+            Key("date", Reads.DATE),
+            Key("primary_voltage_kv", unit="kV"),
+            Key("secondary_voltage_kv", unit="kV"),
+            Key("on_load_tap_changer", Reads.FLAG),
+            Key("phases", Reads.ONE_OF_NUMBERS, numbers=(1, 3)),
+        ),
+        "lot.item": (_text("name"), Key("quantity", unit="pieces"), Key("counts", Reads.FLAG)),
+        "lot.site_cost": (
+            _text("name"),
+            Key("amount_per_unit", unit="{currency}"),
+            Key("liquids", Reads.NAMES),
+            Key("sound_above_db", unit="dB"),
+        ),
     }
 )
 
+_OF_LOT = ("rates", "derivation", "study", "loss_basis", "regulation")
 #: Tables that stand in others, by the row of the outer table in `TABLES`.
 INSIDE: Mapping[str, tuple[Inside, ...]] = MappingProxyType(
     {
+        "delivery": (Inside("level", "delivery.level", "delivery_levels", many=True),),
+        "payment": (Inside("part", "payment.part", "payments", many=True),),
         "economics": (Inside("block", "economics.block", "energy_price_blocks", many=True),),
         "loading": (
             Inside("profile_day_weights", any_name=Key("profile_day_weights", unit="days/year")),
             Inside("cooling_stage", "loading.cooling_stage", "cooling_stages", many=True),
         ),
-        "lot": tuple(Inside(name, f"lot.{name}", name) for name in ("rates", "derivation", "study", "loss_basis")),
+        "lot": (
+            *(Inside(name, f"lot.{name}", name) for name in _OF_LOT),
+            Inside("item", "lot.item", "items", many=True),
+            Inside("site_cost", "lot.site_cost", "site_costs", many=True),
+        ),
     }
 )
 

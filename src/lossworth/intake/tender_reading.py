@@ -19,7 +19,16 @@ __all__ = ["read_draft"]
 
 #: Tables whose keys are names, and which stand apart in the draft.
 _BY_NAME: Mapping[str, tuple[str, ...]] = {"bids": ("decimal_mark_of",), "exchange": ("rates",)}
-_TOP = ("format_version", "tender", "rules", "bids", "exchange", "economics", "loading", "lot")
+#: Tables that level prices, with their place in the record; what the record holds beside the tender's other fields
+#: keeps the name of its table.
+_COMMERCIAL: Mapping[str, Loc] = {
+    "delivery": ("delivery",),
+    "taxes": ("taxes",),
+    "payment": ("payment_terms",),
+    "preference": ("preference",),
+    "award": ("award",),
+}
+_TOP = ("format_version", "tender", "rules", "bids", "exchange", *_COMMERCIAL, "economics", "loading", "lot")
 _DECIMAL_MARK = Key("decimal_mark_of", Reads.WORD, words=(".", ","))
 
 
@@ -68,6 +77,7 @@ class _Reader:
             bids and self.by_name(("bids", "decimal_mark_of"), (*bids.loc, "decimal_mark_of"), lambda _: _DECIMAL_MARK),
             exchange,
             exchange and self.by_name(("exchange", "rates"), (*exchange.loc, "rates"), self.exchange_rate),
+            {name: table for name, loc in _COMMERCIAL.items() if (table := self.single(name, loc)) is not None},
             self.named("economics"),
             self.named("loading"),
             self.lots(),
@@ -281,9 +291,17 @@ def _remedy(name: str, known: tuple[str, ...]) -> str:
 def _homes(name: str) -> Iterator[str]:
     for table, keys in TABLES.items():
         if any(key.name == name for key in keys):
-            yield {"economics": "[economics.NAME]", "loading": "[loading.NAME]", "lot": "[[lot]]"}.get(
-                table, f"[{table}]"
-            )
+            yield _shown_table(table)
+
+
+def _shown_table(table: str) -> str:
+    """Head of a table as the buyer writes it."""
+    outer, _, inner = table.partition(".")
+    if outer in ("economics", "loading"):
+        outer = f"{outer}.NAME"
+    shown = f"{outer}.{inner}".rstrip(".")
+    many = any(inside.table == table and inside.many for tables in INSIDE.values() for inside in tables)
+    return f"[[{shown}]]" if many or table == "lot" else f"[{shown}]"
 
 
 def _scalar_text(value: object) -> str:

@@ -18,7 +18,10 @@ from .tender_values import Written
 
 __all__ = ["record_of"]
 
-_TABLES_WITHOUT_PLACE = ("tender", "bids", "exchange")
+_TABLES_WITHOUT_PLACE = ("tender", "bids", "exchange", "delivery", "payment.part", "award")
+#: Fields of the tender itself that stand in a table of the file.
+_HOME_OF: Mapping[str, str] = {"delivered_point": "delivery", "delivery_levels": "delivery", "planned_award": "award"}
+_ROUNDING = ("round_money_to", "rounding", "rounding_applies_to")
 
 
 def record_of(draft: Draft) -> tuple[Tender | None, tuple[Finding, ...]]:
@@ -55,7 +58,8 @@ def _raw(draft: Draft) -> dict[str, Any]:
     if draft.identity is not None:
         raw["identity"] = _fields(draft.identity)
     if draft.rules is not None:
-        raw["rules"] = _rounded_by(draft.rules, "round_money_to", mode)
+        raw["rules"] = _rules(draft.rules, mode)
+    raw |= _commercial(draft)
     if draft.exchange is not None:
         raw["exchange"] = _with_inside(draft.exchange, rates=draft.exchange_rates)
     return raw
@@ -96,6 +100,23 @@ def _rounded_by(table: DraftTable, quantum_field: str, mode: object) -> dict[str
     return fields
 
 
+def _rules(table: DraftTable, mode: object) -> dict[str, Any]:
+    """Fields of the rounding, and the announced rules in a record of their own, with the line of each."""
+    fields = _rounded_by(table, "round_money_to", mode)
+    own = {name: fields.pop(name) for name in (*_ROUNDING, "place") if name in fields}
+    places = {name: place for name, (_, place) in table.given.items() if name not in _ROUNDING}
+    return {**own, "announced": {**fields, "places": places}}
+
+
+def _commercial(draft: Draft) -> dict[str, Any]:
+    tables = {name: _fields(table) for name, table in draft.commercial.items()}
+    raw: dict[str, Any] = {name: tables[name] for name in ("taxes", "preference") if name in tables}
+    raw |= tables.get("delivery", {}) | tables.get("award", {})
+    if "payment" in tables:
+        raw["payment_terms"] = {"payments": (), **tables["payment"]}
+    return raw
+
+
 def _lot(lot: DraftLot, mode: object) -> dict[str, Any]:
     fields = _fields(lot.own)
     for name, table in (("derivation", lot.derivation), ("study", lot.study)):
@@ -105,7 +126,7 @@ def _lot(lot: DraftLot, mode: object) -> dict[str, Any]:
 
 
 def _findings(draft: Draft, detail: ErrorDetails) -> Iterator[Finding]:
-    loc: Loc = detail["loc"]
+    loc = _loc_in_file(detail["loc"])
     reported = any(loc[:n] in draft.failed for n in range(1, len(loc) + 1))
     if reported or loc == ("lots",):  # a lot that does not fit makes the list of lots too short
         return
@@ -116,6 +137,13 @@ def _findings(draft: Draft, detail: ErrorDetails) -> Iterator[Finding]:
         yield from _missing_of_rounding(table)
     else:
         yield _in_table(table, loc[len(table.loc) :], detail)
+
+
+def _loc_in_file(loc: Loc) -> Loc:
+    """Place in the draft of a field of the record."""
+    if loc[:2] == ("rules", "announced"):
+        return ("rules", *loc[2:])
+    return (_HOME_OF[str(loc[0])], *loc) if loc[0] in _HOME_OF else loc
 
 
 def _table_of(draft: Draft, loc: Loc) -> DraftTable | None:
@@ -142,6 +170,8 @@ def _in_table(table: DraftTable, inside: Loc, detail: ErrorDetails) -> Finding:
     if detail["type"] == "missing":
         return table.finding("tender-key-missing", key_of_field(table.table, field), "must be given")
     value = table.values.get(field)
+    if (table.table, field) == ("payment.part", "share"):  # a share in the record, percent in the file
+        return table.finding("tender-value", field, "must lie between 0 and 100 percent")
     if len(inside) > 1 and isinstance(value, tuple):  # one element of a list of numbers
         element = value[int(inside[1])]
         key = f"{table.key}.{field}[{int(inside[1]) + 1}]"

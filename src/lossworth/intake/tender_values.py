@@ -14,7 +14,7 @@ from ..money import ARITHMETIC, RoundingMode
 from ..records.quantity import Entry, Quantity
 from ..records.tender import CoolingValuation, Method, PresentValueDate, PriceOfYear1, RoundingPoint, Timing
 from .numbers import LARGEST, is_beyond_meaning
-from .suggestions import did_you_mean
+from .suggestions import did_you_mean, one_of
 from .tender_keys import Key, Reads
 
 __all__ = ["LISTS", "Refusal", "Written", "read_value"]
@@ -23,7 +23,7 @@ __all__ = ["LISTS", "Refusal", "Written", "read_value"]
 LISTS: Mapping[Reads, str] = MappingProxyType(
     {
         Reads.NUMBERS: "must be a list of numbers, one for each year",
-        Reads.NAMES: 'must be a list of texts, such as ["workday", "saturday"]',
+        Reads.NAMES: 'must be a list of texts in quotes, such as ["one", "another"]',
         Reads.WORDS: "must be a list of texts",
         Reads.MONTHS: "must be a list of months, such as [11, 12, 1, 2]",
     }
@@ -91,6 +91,13 @@ def _number(key: Key, written: Written, unit: str) -> Quantity | Refusal:
     return Quantity(value=in_unit, stated=number, unit=unit, text=written.text, place=written.place)
 
 
+def _one_of_numbers(key: Key, written: Written, _unit: str) -> int | Refusal:
+    value = written.value
+    if type(value) is int and value in key.numbers:
+        return value
+    return Refusal(f"must be {' or '.join(map(str, key.numbers))}, without quotes")
+
+
 def _power_of_ten(key: Key, written: Written, unit: str) -> Quantity | Refusal:
     quantity = _number(key, written, unit)
     if isinstance(quantity, Quantity) and quantity.value.normalize().as_tuple()[:2] != (0, (1,)):
@@ -141,8 +148,9 @@ def _word(key: Key, written: Written, _unit: str) -> object | Refusal:
     if isinstance(value, str) and value in key.words:
         members = _WORDS_OF.get(key.name)
         return members(value) if members else value
-    allowed = " or ".join(f'"{word}"' for word in key.words)
-    return Refusal(f"must be {allowed}", did_you_mean(str(value), key.words) if isinstance(value, str) else "")
+    return Refusal(
+        f"must be {one_of(key.words)}", did_you_mean(str(value), key.words) if isinstance(value, str) else ""
+    )
 
 
 _MONTHS = 12
@@ -161,6 +169,7 @@ _WORDS_OF: Mapping[str, type[StrEnum]] = MappingProxyType(
 _READERS: Mapping[Reads, Callable[[Key, Written, str], object]] = MappingProxyType(
     {
         Reads.NUMBER: _number,
+        Reads.ONE_OF_NUMBERS: _one_of_numbers,
         Reads.POWER_OF_TEN: _power_of_ten,
         Reads.TEXT: _text,
         Reads.FILE: _text,

@@ -13,6 +13,9 @@ __all__ = ["parse_toml"]
 
 _WHERE = re.compile(r" \(at (?:line (?P<line>\d+), column (?P<column>\d+)|end of document)\)$")
 
+#: A key of many parts, for which the parser takes memory by the square of their number: 100,000 would want 40 GB.
+_DEEP_KEY = re.compile(r"""(?<![\w-])(?:(?:[\w-]+|"[^"\n]*"|'[^'\n]*')[ \t]*\.[ \t]*){32}""")
+
 
 def parse_toml(source: str, shown_as: str) -> dict[str, Any] | Finding:
     """Values of a TOML text, fractions as exact decimals.
@@ -29,6 +32,9 @@ def parse_toml(source: str, shown_as: str) -> dict[str, Any] | Finding:
     dict or Finding
         The document, or what keeps it from being one.
     """
+    if deep := _DEEP_KEY.search(source):
+        line = source.count("\n", 0, deep.start()) + 1
+        return Finding("tender-syntax", "file", "must not have keys of that many parts", Place(shown_as, line=line))
     try:
         return tomllib.loads(source, parse_float=_decimal)
     except tomllib.TOMLDecodeError as error:
