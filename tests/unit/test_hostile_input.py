@@ -193,18 +193,6 @@ def test_read_workbook__a_million_rows_of_format() -> None:
     assert [len(sheet.rows) for sheet in book.sheets] == [5]
 
 
-def test_read_workbook__shared_text_in_many_cells() -> None:
-    """A long text that a hundred thousand cells share is counted in each of them."""
-    cells = "".join(f'<row r="{row}"><c r="A{row}" t="s"><v>0</v></c></row>' for row in range(6, 2000))
-    data = with_sheet_xml(DATA, "</sheetData>", f"{cells}</sheetData>")
-    others = "<si><t>x</t></si>" * 50
-    shared = f'<sst xmlns="{SPREADSHEET}"><si><t>{"x" * 30_000}</t></si>{others}</sst>'
-    data = with_member(data, "xl/sharedStrings.xml", lambda _: shared.encode())
-    found = read_workbook(data, "a.xlsx")
-    assert isinstance(found, Finding)
-    assert (found.kind, found.rule) == ("file-too-large", "must hold at most 16,000,000 characters in its cells")
-
-
 @pytest.mark.parametrize("part", ["xl/styles.xml", "xl/sharedStrings.xml", "xl/workbook.xml", "[Content_Types].xml"])
 @pytest.mark.parametrize("content", DAMAGED)
 def test_read_workbook__damaged_parts(part: str, content: bytes) -> None:
